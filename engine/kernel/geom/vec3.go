@@ -1,0 +1,110 @@
+package geom
+
+import "math"
+
+// Vec3 is a point, direction or normal in float32. Products are rounded before they are summed, so that no
+// compiler may fuse them (Go specification, "Floating-point operators") and every machine gives the same bits.
+type Vec3 struct{ X, Y, Z float32 }
+
+// Add returns a + b.
+func (a Vec3) Add(b Vec3) Vec3 { return Vec3{a.X + b.X, a.Y + b.Y, a.Z + b.Z} }
+
+// Sub returns a - b.
+func (a Vec3) Sub(b Vec3) Vec3 { return Vec3{a.X - b.X, a.Y - b.Y, a.Z - b.Z} }
+
+// Scale returns s·a.
+func (a Vec3) Scale(s float32) Vec3 { return Vec3{a.X * s, a.Y * s, a.Z * s} }
+
+// Neg returns -a.
+func (a Vec3) Neg() Vec3 { return Vec3{-a.X, -a.Y, -a.Z} }
+
+// AddScaled returns a + s·b, each product rounded.
+func (a Vec3) AddScaled(s float32, b Vec3) Vec3 {
+	return Vec3{a.X + float32(s*b.X), a.Y + float32(s*b.Y), a.Z + float32(s*b.Z)}
+}
+
+// Dot returns a·b.
+func (a Vec3) Dot(b Vec3) float32 {
+	return float32(a.X*b.X) + float32(a.Y*b.Y) + float32(a.Z*b.Z)
+}
+
+// Cross returns a×b.
+func (a Vec3) Cross(b Vec3) Vec3 {
+	return Vec3{
+		float32(a.Y*b.Z) - float32(a.Z*b.Y),
+		float32(a.Z*b.X) - float32(a.X*b.Z),
+		float32(a.X*b.Y) - float32(a.Y*b.X),
+	}
+}
+
+// Len returns |a|.
+func (a Vec3) Len() float32 { return float32(math.Sqrt(float64(a.Dot(a)))) }
+
+// Unit returns a / |a|, and the zero vector for the zero vector. Lengths between 1e-18 and 1e18 are safe.
+func (a Vec3) Unit() Vec3 {
+	l := a.Len()
+	if l == 0 {
+		return Vec3{}
+	}
+	return a.Scale(1 / l)
+}
+
+// Wide returns a in float64, exactly.
+func (a Vec3) Wide() Vec3d { return Vec3d{float64(a.X), float64(a.Y), float64(a.Z)} }
+
+// Finite reports whether no component is NaN or infinite.
+func (a Vec3) Finite() bool {
+	s := a.X*0 + a.Y*0 + a.Z*0
+	return s == 0
+}
+
+// Frame returns two unit vectors that with the unit vector n make a right-handed orthonormal basis (t, b, n).
+// Source: Duff et al. 2017, "Building an orthonormal basis, revisited", listing 3.
+func Frame(n Vec3) (t, b Vec3) {
+	sign := float32(math.Copysign(1, float64(n.Z)))
+	a := -1 / (sign + n.Z)
+	c := n.X * n.Y * a
+	t = Vec3{1 + float32(sign*float32(n.X*n.X)*a), sign * c, -sign * n.X}
+	b = Vec3{c, sign + float32(n.Y*n.Y*a), -n.Y}
+	return t, b
+}
+
+// Ray is the set of points Org + t·Dir for t in (TMin, TMax). Dir need not be unit; t counts in lengths of Dir.
+type Ray struct {
+	Org, Dir   Vec3 // world space unless the name says otherwise
+	TMin, TMax float32
+}
+
+// At returns Org + t·Dir.
+func (r Ray) At(t float32) Vec3 { return r.Org.AddScaled(t, r.Dir) }
+
+// Box is an axis-aligned box. The empty box has Min above Max; see EmptyBox.
+type Box struct{ Min, Max Vec3 }
+
+// EmptyBox contains nothing; Extend and Union grow it.
+func EmptyBox() Box {
+	inf := float32(math.Inf(1))
+	return Box{Vec3{inf, inf, inf}, Vec3{-inf, -inf, -inf}}
+}
+
+// Empty reports whether the box contains no point.
+func (b Box) Empty() bool { return !(b.Min.X <= b.Max.X && b.Min.Y <= b.Max.Y && b.Min.Z <= b.Max.Z) }
+
+// Extend returns the smallest box that holds b and p.
+func (b Box) Extend(p Vec3) Box {
+	return Box{
+		Vec3{min(b.Min.X, p.X), min(b.Min.Y, p.Y), min(b.Min.Z, p.Z)},
+		Vec3{max(b.Max.X, p.X), max(b.Max.Y, p.Y), max(b.Max.Z, p.Z)},
+	}
+}
+
+// Union returns the smallest box that holds b and c.
+func (b Box) Union(c Box) Box { return b.Extend(c.Min).Extend(c.Max) }
+
+// Centre returns the middle of the box.
+func (b Box) Centre() Vec3 {
+	return Vec3{b.Min.X + (b.Max.X-b.Min.X)/2, b.Min.Y + (b.Max.Y-b.Min.Y)/2, b.Min.Z + (b.Max.Z-b.Min.Z)/2}
+}
+
+// Size returns the lengths of the box's edges.
+func (b Box) Size() Vec3 { return b.Max.Sub(b.Min) }

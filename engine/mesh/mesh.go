@@ -1,0 +1,29 @@
+package mesh
+
+import (
+	"lampbook/engine/kernel/geom"
+	"lampbook/engine/model"
+)
+
+// Mesh is a set of triangles in object space, counter-clockwise seen from outside.
+type Mesh struct {
+	Positions []geom.Vec3  // metres
+	Normals   []geom.Vec3  // unit, one a position; nil: every triangle is flat
+	UVs       [][2]float32 // one a position; nil: none
+	Triangles [][3]uint32  // indices into Positions
+	Slots     []uint16     // one a triangle: which of SlotNames it belongs to; nil: all to the first
+	SlotNames []string     // at least one; material names where a file gives them, else ""
+	// Materials holds what a file says of each slot; nil where it says nothing.
+	Materials []model.Material
+}
+
+// Bounds returns the smallest box around the positions that triangles use.
+func (m *Mesh) Bounds() geom.Box {
+	b := geom.EmptyBox()
+	for _, t := range m.Triangles {
+		for _, i := range t {
+			b = b.Extend(m.Positions[i])
+		}
+	}
+	return b
+}

@@ -1,0 +1,43 @@
+package model
+
+// Sheet is a contact sheet: a pivot of the plan's frames by their tags.
+type Sheet struct {
+	Name    string   // file name without its ending, as frame names are made; unique among the sheets
+	Title   string   // may be empty
+	Rows    []string // tag keys whose values make the rows, outermost first; none: the sheet has one axis
+	Columns []string // likewise; the key AxisPass stands for each frame's passes
+	Pages   []string // likewise; a page for each combination
+	// Order gives the values of a tag that come first, in that order; the rest follow as first seen.
+	Order   []TagOrder
+	Where   []TagChoice // only frames for which every choice holds
+	Caption string      // under each tile; {key} stands for a tag's value, {name} for the frame's name; empty: none
+	PerLine int         // a sheet with one axis: tiles in a line; 0 means what brings the sheet nearest to √2 : 1
+	Tile    [2]int      // pixels that a tile is scaled to, keeping its shape; 0, 0 means the picture's own
+	Paper   Paper
+	Pos     Pos // where the scene registered it
+}
+
+// AxisPass is the name that, as a row, column or page, stands for each frame's picture and passes instead of a tag.
+const AxisPass = "pass"
+
+// TagOrder is an order of one tag's values.
+type TagOrder struct {
+	Key    string
+	Values []Value
+}
+
+// TagChoice admits frames whose tag has one of the values.
+type TagChoice struct {
+	Key    string
+	Values []Value
+}
+
+// Paper is the ground of a sheet.
+type Paper uint8
+
+// The papers: 18 % grey, near white for print, near black for projection.
+const (
+	PaperGrey Paper = iota
+	PaperLight
+	PaperDark
+)
