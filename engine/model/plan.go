@@ -98,7 +98,7 @@ type Camera struct {
 	Height           float64    // orthographic: height of what is seen, metres, > 0
 	FNumber          float64    // aperture, focal length over its diameter; 0 is a pinhole
 	FocusDistance    float64    // metres along the view to the plane in focus; 0 means the target's distance
-	Shift            [2]float64 // moves the picture on the sensor, in widths and heights of the picture; + is right and up
+	Shift            [2]float64 // moves the window that the picture shows, in its widths and heights; + is right and up
 }
 
 // Projection is how a camera maps the scene to the picture.

@@ -1,0 +1,224 @@
+package render
+
+import (
+	"lampbook/engine/kernel/bvh"
+	"lampbook/engine/kernel/geom"
+	"lampbook/engine/kernel/sample"
+	"lampbook/engine/kernel/shade"
+)
+
+// Purposes of sample points. Lights have their own, from their names.
+var (
+	purposeFilter  = sample.Name("pixel filter")
+	purposeLens    = sample.Name("lens")
+	purposeOpacity = sample.Name("opacity")
+)
+
+// Rays of one batch, at most: enough that rays of a pixel go together, small enough to stay in the core's nearest memory.
+const (
+	maxCameraBatch = 256
+	maxShadowBatch = 1024
+)
+
+// maxLayers is how many see-through surfaces a ray passes before it is stopped.
+const maxLayers = 64
+
+// hit is what a look may need of a camera ray's end. World space.
+type hit struct {
+	p      geom.Vec3 // point
+	shadow geom.Vec3 // where shadow rays start: off the surface, and off its facets where it is smooth
+	n      geom.Vec3 // unit shading normal, towards the camera
+	wo     geom.Vec3 // unit, towards the camera
+	local  int32     // which of the pixel's surfaces
+	index  uint32    // which of the pixel's samples
+}
+
+// worker is one goroutine's scratch.
+type worker struct {
+	walker  bvh.Walker
+	uv      [][2]float32
+	lens    [][2]float32
+	rays    []geom.Ray
+	hits    []bvh.Hit
+	points  []hit
+	shadows []shadowRay
+	shots   []geom.Ray
+	blocked []bool
+	probes  []bvh.Hit
+	sums    pixelSums
+	cast    Rays // cast so far
+}
+
+// shadowRay is the light that a shadow ray carries if nothing stops it.
+type shadowRay struct {
+	wi     geom.Vec3
+	weight float32 // E0 of the unit light, divided by the light's rays
+	nl     float32 // N·L, > 0
+	point  int32   // into worker.points
+}
+
+// pixelSums is what a pixel's rays found, for every look: sums over its samples, by surface seen.
+//
+// Sums are float64, so that four thousand samples lose nothing.
+type pixelSums struct {
+	surfaces []int32     // the cast's surfaces that the pixel sees, in the order of its samples
+	count    []float64   // by local surface: camera rays that ended there
+	diffuse  []float64   // by local surface and light: Σ E0·(N·L)·V for the unit light
+	ambient  []float64   // by local surface and light: Σ E0
+	lobe     [][]float64 // by local surface: by light and lobe: Σ E0·lobe·V
+	globe    []float64   // by globe: camera rays that ended there
+	covered  float64
+	depth    float64
+	normal   [3]float64
+}
+
+// reset makes the sums empty.
+func (s *pixelSums) reset(globes int) {
+	s.surfaces, s.count = s.surfaces[:0], s.count[:0]
+	s.diffuse, s.ambient = s.diffuse[:0], s.ambient[:0]
+	s.globe = append(s.globe[:0], make([]float64, globes)...)
+	s.covered, s.depth, s.normal = 0, 0, [3]float64{}
+}
+
+// local returns the pixel's number for a surface of the cast, and makes room for its sums at first sight.
+func (s *pixelSums) local(c *cast, surface int32) int32 {
+	for k, have := range s.surfaces {
+		if have == surface {
+			return int32(k)
+		}
+	}
+	k := len(s.surfaces)
+	s.surfaces = append(s.surfaces, surface)
+	s.count = append(s.count, 0)
+	for range c.lights {
+		s.diffuse = append(s.diffuse, 0)
+		s.ambient = append(s.ambient, 0)
+	}
+	if k == len(s.lobe) {
+		s.lobe = append(s.lobe, nil)
+	}
+	s.lobe[k] = append(s.lobe[k][:0], make([]float64, len(c.lights)*len(c.surfaces[surface].lobes))...)
+	return int32(k)
+}
+
+// castPixel casts every ray of pixel (x, y) and leaves what they found in w.sums.
+func (c *cast) castPixel(w *worker, x, y int) {
+	s := &c.settings
+	key := sample.PixelKey(s.Seed, x, y)
+	w.sums.reset(len(c.globes))
+	batch := min(s.Samples, maxCameraBatch, max(1, maxShadowBatch/s.LightSamples))
+	for first := 0; first < s.Samples; first += batch {
+		n := min(batch, s.Samples-first)
+		c.castCamera(w, key, x, y, uint32(first), n)
+		if len(w.points) == 0 {
+			continue
+		}
+		for l := range c.lights {
+			c.castLight(w, key, l)
+		}
+	}
+}
+
+// castCamera casts n camera rays from sample first on and fills w.points.
+func (c *cast) castCamera(w *worker, key sample.Key, x, y int, first uint32, n int) {
+	w.uv = grow(w.uv, n)
+	key.For(purposeFilter).Points(first, w.uv)
+	w.lens = grow(w.lens, n)
+	if c.camera.lensX != (geom.Vec3{}) {
+		key.For(purposeLens).Points(first, w.lens)
+	}
+	w.rays, w.hits = grow(w.rays, n), grow(w.hits, n)
+	for i := range n {
+		dx, dy := filterOffset(c.settings.Filter, w.uv[i])
+		w.rays[i] = c.camera.ray(float32(x)+dx, float32(y)+dy, w.lens[i][0], w.lens[i][1])
+	}
+	w.cast.Camera += int64(n)
+	if c.translucent {
+		c.closestOpaque(w, bvh.SeenByCamera, w.rays, w.hits, key.For(purposeOpacity), func(i int) uint32 { return first + uint32(i) })
+	} else {
+		c.scene.Closest(&w.walker, bvh.SeenByCamera, w.rays, w.hits)
+	}
+
+	w.points = w.points[:0]
+	for i := range n {
+		h, ray := &w.hits[i], &w.rays[i]
+		if len(c.globes) > 0 {
+			if g := c.nearestGlobe(ray, h); g >= 0 {
+				w.sums.globe[g]++
+				w.sums.covered++
+				continue
+			}
+		}
+		if h.Placement == bvh.NoHit {
+			continue
+		}
+		pt, surface := c.interact(h, ray)
+		pt.local = w.sums.local(c, surface)
+		pt.index = first + uint32(i)
+		w.points = append(w.points, pt)
+		w.sums.count[pt.local]++
+		w.sums.covered++
+		if c.wantDepth {
+			w.sums.depth += float64(pt.p.Sub(c.camera.eye).Dot(c.camera.forward))
+		}
+		if c.wantNormal {
+			w.sums.normal[0] += float64(pt.n.X)
+			w.sums.normal[1] += float64(pt.n.Y)
+			w.sums.normal[2] += float64(pt.n.Z)
+		}
+	}
+}
+
+// castLight casts the shadow rays from w.points to light l and adds what arrives to the sums.
+func (c *cast) castLight(w *worker, key sample.Key, l int) {
+	c.aimShadows(w, key, l)
+	blocked := w.blocked[:0]
+	if c.lights[l].shadow {
+		w.cast.Shadow += int64(len(w.shots))
+		w.blocked = grow(w.blocked, len(w.shots))
+		blocked = w.blocked
+		c.occluded(w, key, l, blocked)
+	}
+	for i := range w.shadows {
+		if len(blocked) > 0 && blocked[i] {
+			continue
+		}
+		ray := &w.shadows[i]
+		pt := &w.points[ray.point]
+		w.sums.diffuse[int(pt.local)*len(c.lights)+l] += float64(ray.weight * ray.nl)
+		lobes := c.surfaces[w.sums.surfaces[pt.local]].lobes
+		if len(lobes) == 0 {
+			continue
+		}
+		nh := shade.HalfCosine(pt.n, ray.wi, pt.wo)
+		sums := w.sums.lobe[pt.local][l*len(lobes):]
+		for k := range lobes {
+			sums[k] += float64(ray.weight * lobes[k].At(nh, ray.nl))
+		}
+	}
+}
+
+// closestOpaque is Closest for casts with see-through surfaces: each surface stops its share of rays, chosen by a
+// number of the ray's own. sampleOf gives the sample point of ray i.
+func (c *cast) closestOpaque(w *worker, mask bvh.Mask, rays []geom.Ray, hits []bvh.Hit, key sample.Key, sampleOf func(i int) uint32) {
+	c.scene.Closest(&w.walker, mask, rays, hits)
+	for i := range hits {
+		ray := rays[i]
+		for layer := uint32(1); hits[i].Placement != bvh.NoHit && layer <= maxLayers; layer++ {
+			opacity := c.surfaces[c.surfaceOf(&hits[i])].opacity
+			if opacity >= 1 || key.For(layer).Float(sampleOf(i)) < opacity {
+				break
+			}
+			ray.TMin = hits[i].T
+			c.scene.Closest(&w.walker, mask, []geom.Ray{ray}, hits[i:i+1])
+		}
+	}
+}
+
+// grow returns a slice of n values, reusing s where it is long enough. The values are not cleared.
+func grow[T any](s []T, n int) []T {
+	if cap(s) < n {
+		return make([]T, n)
+	}
+	return s[:n]
+}

@@ -1,0 +1,139 @@
+package render
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"runtime"
+	"sync"
+
+	"lampbook/engine/kernel/bvh"
+	"lampbook/engine/mesh"
+	"lampbook/engine/model"
+	"lampbook/engine/pixmap"
+)
+
+// Engine renders casts and keeps the hierarchies of the meshes that it has built. Safe to share; casts may run at once.
+type Engine struct {
+	mu     sync.Mutex
+	source *mesh.Library
+	built  map[model.Hash]builtMesh
+}
+
+// builtMesh is a mesh with its hierarchy, or why there is none.
+type builtMesh struct {
+	mesh *mesh.Mesh
+	tree *bvh.Tree
+	err  error
+}
+
+// NewEngine returns an engine that takes its meshes from the library.
+func NewEngine(source *mesh.Library) *Engine {
+	return &Engine{source: source, built: map[model.Hash]builtMesh{}}
+}
+
+// Options tune Render. The zero value uses every core.
+type Options struct {
+	Threads  int              // goroutines; 0 means one a core
+	Progress func(rays int64) // called now and then from many goroutines with the rays cast since its last call; nil: none
+}
+
+// Result is one frame's outcome.
+type Result struct {
+	Frame   int           // index into the plan's frames
+	Linear  *pixmap.Image // planes R G B A and the passes asked for; see pixmap.Image
+	Display *pixmap.Image // planes R G B A, sRGB-encoded, straight
+	Rays    Rays          // of the whole cast, shared by its frames
+	Err     error         // why there is no picture; Linear and Display are then nil
+}
+
+// ErrNotFinite is the error of a picture that holds NaN or infinity.
+var ErrNotFinite = errors.New("picture has pixels that are not finite numbers: look for extreme light intensities or exposures")
+
+// Render casts the group once and returns a result for each of its frames, in their order. What concerns one frame or all of them
+// (a mesh that cannot be built) is in the results; the error is the context's, when it ended before the cast was done, or says that
+// frames of different casts were mixed.
+func (e *Engine) Render(ctx context.Context, c Cast, o Options) ([]Result, error) {
+	if len(c.Frames) == 0 {
+		return nil, errors.New("a cast needs at least one frame")
+	}
+	results := make([]Result, len(c.Frames))
+	for k, i := range c.Frames {
+		results[k].Frame = i
+		if reason := c.Plan.Frames[i].Failure; reason != "" {
+			return nil, fmt.Errorf("frame %q cannot be rendered: %s", c.Plan.Frames[i].Name, reason)
+		}
+	}
+	compiled, err := compile(c, func(id model.MeshID) (*mesh.Mesh, *bvh.Tree, error) { return e.build(c.Plan.Meshes[id]) })
+	if err != nil {
+		for k := range results {
+			results[k].Err = err
+		}
+		return results, nil
+	}
+	films, rays, err := compiled.render(ctx, o)
+	if err != nil {
+		return nil, err
+	}
+	for k, f := range films {
+		results[k].Rays = rays
+		if !f.linear.Finite() {
+			results[k].Err = ErrNotFinite
+			continue
+		}
+		results[k].Linear, results[k].Display = f.linear, f.display
+	}
+	return results, nil
+}
+
+// build returns the mesh with its hierarchy, made at first asking.
+func (e *Engine) build(m model.Mesh) (*mesh.Mesh, *bvh.Tree, error) {
+	e.mu.Lock()
+	defer e.mu.Unlock()
+	key := model.MeshHash(m)
+	b, ok := e.built[key]
+	if !ok {
+		b.mesh, b.err = e.source.Get(m)
+		if b.err == nil {
+			b.tree = bvh.Build(b.mesh.Positions, b.mesh.Triangles, bvh.BuildOptions{})
+		}
+		e.built[key] = b
+	}
+	return b.mesh, b.tree, b.err
+}
+
+// render casts every tile and returns a film a look.
+func (c *cast) render(ctx context.Context, o Options) ([]*film, Rays, error) {
+	films := make([]*film, len(c.looks))
+	for k := range films {
+		films[k] = newFilm(c.looks[k].settings)
+	}
+	threads := o.Threads
+	if threads <= 0 {
+		threads = runtime.GOMAXPROCS(0)
+	}
+	tiles := tilesOf(c.settings.Width, c.settings.Height)
+	threads = min(threads, len(tiles))
+	workers := make([]worker, threads)
+	err := eachTile(ctx, threads, tiles, func(n int, t tile) {
+		w := &workers[n]
+		before := w.cast
+		for y := t.y0; y < t.y1; y++ {
+			for x := t.x0; x < t.x1; x++ {
+				c.castPixel(w, x, y)
+				for k, f := range films {
+					f.expose(c, &c.looks[k], &w.sums, y*c.settings.Width+x)
+				}
+			}
+		}
+		if o.Progress != nil {
+			o.Progress(w.cast.Camera + w.cast.Shadow - before.Camera - before.Shadow)
+		}
+	})
+	var rays Rays
+	for i := range workers {
+		rays.Camera += workers[i].cast.Camera
+		rays.Shadow += workers[i].cast.Shadow
+	}
+	return films, rays, err
+}
