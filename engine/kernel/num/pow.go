@@ -54,15 +54,35 @@ func init() {
 	}
 }
 
-// seriesLog2 returns log2 x for x in [1/2, 2] by 2/ln 2 · artanh((x-1)/(x+1)), summed from the smallest term.
+// seriesLog2 returns log2 x for x in [1/2, 2] by 2/ln 2 · artanh((x-1)/(x+1)).
 func seriesLog2(x float64) float64 {
-	t := (x - 1) / (x + 1)
+	return 2 / math.Ln2 * artanhSmall((x-1)/(x+1))
+}
+
+// artanhSmall is artanh t for |t| <= 1/3, by its Taylor series, summed from the smallest term: 3^-41/41 is below 2^-64.
+func artanhSmall(t float64) float64 {
 	t2 := t * t
 	sum := 0.0
-	for k := 39; k >= 1; k -= 2 { // |t| <= 1/3: 3^-41/41 is below 2^-64
+	for k := 39; k >= 1; k -= 2 {
 		sum = float64(sum*t2) + 1/float64(k)
 	}
-	return 2 / math.Ln2 * float64(t*sum)
+	return float64(t * sum)
+}
+
+// AtanhWide returns the inverse hyperbolic tangent of t in (-1, 1), half the logarithm of (1+t)/(1-t), accurate to
+// 4e-16 relative. It is ±Inf at ±1 and NaN beyond. It sums a long series: not for inner loops.
+func AtanhWide(t float64) float64 {
+	if math.Abs(t) <= 1.0/3 {
+		return artanhSmall(t)
+	}
+	switch {
+	case t == 1 || t == -1:
+		return math.Inf(int(t))
+	case !(t > -1 && t < 1):
+		return math.NaN()
+	}
+	m, e := math.Frexp((1 + t) / (1 - t))
+	return float64(float64(e)*(math.Ln2/2)) + artanhSmall((m-1)/(m+1))
 }
 
 // Coefficients of log2(1+r) = r/ln 2 · (1 - r/2 + r²/3 - …), Taylor; with |r| < 1/127 the first term left out is
