@@ -1,0 +1,38 @@
+package model
+
+import (
+	"slices"
+	"strconv"
+)
+
+// String returns the value as text: a number in the fewest digits that read back the same, a truth value as "true" or "false".
+func (v Value) String() string {
+	switch v.Kind {
+	case NumberValue:
+		return strconv.FormatFloat(v.Number, 'g', -1, 64)
+	case TruthValue:
+		return strconv.FormatBool(v.Truth)
+	}
+	return v.Text
+}
+
+// Tag returns the frame's value of a tag; ok is false where it has none.
+func (f *Frame) Tag(key string) (v Value, ok bool) {
+	for _, t := range f.Tags {
+		if t.Key == key {
+			return t.Value, true
+		}
+	}
+	return Value{}, false
+}
+
+// Shows reports whether the sheet's choice of frames admits this one.
+func (s *Sheet) Shows(f *Frame) bool {
+	for _, c := range s.Where {
+		v, ok := f.Tag(c.Key)
+		if !ok || !slices.Contains(c.Values, v) {
+			return false
+		}
+	}
+	return true
+}
