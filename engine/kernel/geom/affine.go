@@ -12,7 +12,9 @@ func (a Vec3d) Add(b Vec3d) Vec3d { return Vec3d{a.X + b.X, a.Y + b.Y, a.Z + b.Z
 func (a Vec3d) Sub(b Vec3d) Vec3d { return Vec3d{a.X - b.X, a.Y - b.Y, a.Z - b.Z} }
 
 // Scale returns s·a, each product rounded, also where the call is inlined and a sum follows.
-func (a Vec3d) Scale(s float64) Vec3d { return Vec3d{float64(a.X * s), float64(a.Y * s), float64(a.Z * s)} }
+func (a Vec3d) Scale(s float64) Vec3d {
+	return Vec3d{float64(a.X * s), float64(a.Y * s), float64(a.Z * s)}
+}
 
 // Neg returns -a.
 func (a Vec3d) Neg() Vec3d { return Vec3d{-a.X, -a.Y, -a.Z} }

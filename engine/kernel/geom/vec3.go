@@ -13,7 +13,9 @@ func (a Vec3) Add(b Vec3) Vec3 { return Vec3{a.X + b.X, a.Y + b.Y, a.Z + b.Z} }
 func (a Vec3) Sub(b Vec3) Vec3 { return Vec3{a.X - b.X, a.Y - b.Y, a.Z - b.Z} }
 
 // Scale returns s·a, each product rounded, also where the call is inlined and a sum follows.
-func (a Vec3) Scale(s float32) Vec3 { return Vec3{float32(a.X * s), float32(a.Y * s), float32(a.Z * s)} }
+func (a Vec3) Scale(s float32) Vec3 {
+	return Vec3{float32(a.X * s), float32(a.Y * s), float32(a.Z * s)}
+}
 
 // Neg returns -a.
 func (a Vec3) Neg() Vec3 { return Vec3{-a.X, -a.Y, -a.Z} }
