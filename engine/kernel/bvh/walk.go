@@ -1,0 +1,135 @@
+package bvh
+
+import (
+	"math"
+
+	"lampbook/engine/kernel/tri"
+)
+
+// bits orders floats >= +0 as integers. Of a negative one it gives a negative integer, which only ever loses as an entering distance
+// and only ever fails as a leaving one. Integer comparisons become conditional moves, float comparisons would be branches.
+func bits(f float32) int32 { return int32(math.Float32bits(f)) }
+
+// closest finds the nearest hit of r in t that beats best.
+func (t *Tree) closest(w *Walker, r *tri.Ray, best *tri.Best) {
+	pairs := t.pairs
+	if len(pairs) == 0 {
+		return
+	}
+	nx, ny, nz := r.Near[0], r.Near[1], r.Near[2]
+	fx, fy, fz := r.Far[0], r.Far[1], r.Far[2]
+	ix, iy, iz := r.Inv[0], r.Inv[1], r.Inv[2]
+	var sx, sy, sz uint = 0, 2, 4
+	if ix < 0 {
+		sx = 1
+	}
+	if iy < 0 {
+		sy = 3
+	}
+	if iz < 0 {
+		sz = 5
+	}
+	tMin, tMax := bits(r.TMin), bits(best.T)
+	top := uint(0)
+	at := uint32(0)
+	for {
+		for at < leafBit {
+			p := &pairs[at]
+			lx, ly, lz := &p[sx&7], &p[sy&7], &p[sz&7]
+			hx, hy, hz := &p[(sx^1)&7], &p[(sy^1)&7], &p[(sz^1)&7]
+			enter0 := max(tMin, bits((lx[0]-nx)*ix), bits((ly[0]-ny)*iy), bits((lz[0]-nz)*iz))
+			leave0 := min(tMax, bits((hx[0]-fx)*ix), bits((hy[0]-fy)*iy), bits((hz[0]-fz)*iz))
+			enter1 := max(tMin, bits((lx[1]-nx)*ix), bits((ly[1]-ny)*iy), bits((lz[1]-nz)*iz))
+			leave1 := min(tMax, bits((hx[1]-fx)*ix), bits((hy[1]-fy)*iy), bits((hz[1]-fz)*iz))
+			c0, c1 := math.Float32bits(p[6][0]), math.Float32bits(p[6][1])
+			if enter0 <= leave0 {
+				at = c0
+				if enter1 <= leave1 {
+					far := enter1
+					if enter1 < enter0 {
+						at, c1, far = c1, c0, enter0
+					}
+					w.stack[top&(stackSize-1)] = uint64(far)<<32 | uint64(c1)
+					top++
+				}
+			} else if enter1 <= leave1 {
+				at = c1
+			} else {
+				goto pop
+			}
+		}
+		tri.Closest(r, t.tris[at&^leafBit>>3:][:at&7+1], best)
+		tMax = bits(best.T)
+	pop:
+		for {
+			if top == 0 {
+				return
+			}
+			top--
+			e := w.stack[top&(stackSize-1)]
+			if int32(e>>32) <= tMax {
+				at = uint32(e)
+				break
+			}
+		}
+	}
+}
+
+// occluded reports whether anything in t is hit between r.TMin and r.TMax.
+func (t *Tree) occluded(w *Walker, r *tri.Ray) bool {
+	pairs := t.pairs
+	if len(pairs) == 0 {
+		return false
+	}
+	nx, ny, nz := r.Near[0], r.Near[1], r.Near[2]
+	fx, fy, fz := r.Far[0], r.Far[1], r.Far[2]
+	ix, iy, iz := r.Inv[0], r.Inv[1], r.Inv[2]
+	var sx, sy, sz uint = 0, 2, 4
+	if ix < 0 {
+		sx = 1
+	}
+	if iy < 0 {
+		sy = 3
+	}
+	if iz < 0 {
+		sz = 5
+	}
+	tMin, tMax := bits(r.TMin), bits(r.TMax)
+	top := uint(0)
+	at := uint32(0)
+	for {
+		for at < leafBit {
+			p := &pairs[at]
+			lx, ly, lz := &p[sx&7], &p[sy&7], &p[sz&7]
+			hx, hy, hz := &p[(sx^1)&7], &p[(sy^1)&7], &p[(sz^1)&7]
+			enter0 := max(tMin, bits((lx[0]-nx)*ix), bits((ly[0]-ny)*iy), bits((lz[0]-nz)*iz))
+			leave0 := min(tMax, bits((hx[0]-fx)*ix), bits((hy[0]-fy)*iy), bits((hz[0]-fz)*iz))
+			enter1 := max(tMin, bits((lx[1]-nx)*ix), bits((ly[1]-ny)*iy), bits((lz[1]-nz)*iz))
+			leave1 := min(tMax, bits((hx[1]-fx)*ix), bits((hy[1]-fy)*iy), bits((hz[1]-fz)*iz))
+			c0, c1 := math.Float32bits(p[6][0]), math.Float32bits(p[6][1])
+			if enter0 <= leave0 {
+				at = c0
+				if enter1 <= leave1 {
+					if enter1 < enter0 {
+						at, c1 = c1, c0
+					}
+					w.stack[top&(stackSize-1)] = uint64(c1)
+					top++
+				}
+			} else if enter1 <= leave1 {
+				at = c1
+			} else {
+				goto pop
+			}
+		}
+		if tri.Any(r, t.tris[at&^leafBit>>3:][:at&7+1]) {
+			return true
+		}
+	pop:
+		if top == 0 {
+			return false
+		}
+		top--
+		at = uint32(w.stack[top&(stackSize-1)])
+	}
+}
