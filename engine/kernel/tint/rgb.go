@@ -10,11 +10,15 @@ func Grey(y float32) RGB { return RGB{y, y, y} }
 // Add returns a + b.
 func (a RGB) Add(b RGB) RGB { return RGB{a.R + b.R, a.G + b.G, a.B + b.B} }
 
-// Mul returns the component-wise product.
-func (a RGB) Mul(b RGB) RGB { return RGB{a.R * b.R, a.G * b.G, a.B * b.B} }
+// Mul returns the component-wise product, rounded: no compiler may fuse it with a sum. Like Scale it rounds, so that no compiler fuses it with a sum that follows.
+func (a RGB) Mul(b RGB) RGB {
+	return RGB{float32(a.R * b.R), float32(a.G * b.G), float32(a.B * b.B)}
+}
 
-// Scale returns s·a.
-func (a RGB) Scale(s float32) RGB { return RGB{a.R * s, a.G * s, a.B * s} }
+// Scale returns s·a, rounded likewise.
+func (a RGB) Scale(s float32) RGB {
+	return RGB{float32(a.R * s), float32(a.G * s), float32(a.B * s)}
+}
 
 // Black reports whether every component is zero.
 func (a RGB) Black() bool { return a.R == 0 && a.G == 0 && a.B == 0 }
