@@ -310,6 +310,20 @@ func (m Mesh) validate() error {
 			return fmt.Errorf("profile and outline points must be finite numbers, got %v", q)
 		}
 	}
+	if m.Raw != nil {
+		for _, list := range [][][3]float64{m.Raw.Positions, m.Raw.Normals} {
+			for i, q := range list {
+				if !finite(q[:]...) {
+					return fmt.Errorf("positions and normals must be finite numbers, entry %d is %v", i+1, q)
+				}
+			}
+		}
+		for i, q := range m.Raw.UVs {
+			if !finite(q[:]...) {
+				return fmt.Errorf("uvs must be finite numbers, entry %d is %v", i+1, q)
+			}
+		}
+	}
 	return nil
 }
 

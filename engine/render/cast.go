@@ -5,6 +5,7 @@ import (
 	"lampbook/engine/kernel/geom"
 	"lampbook/engine/kernel/sample"
 	"lampbook/engine/kernel/shade"
+	"lampbook/engine/model"
 )
 
 // Purposes of sample points. Lights have their own, from their names.
@@ -35,18 +36,21 @@ type hit struct {
 
 // worker is one goroutine's scratch.
 type worker struct {
+	first   uint32 // first sample of the batch at hand
+	batch   int    // and how many it has
 	walker  bvh.Walker
 	uv      [][2]float32
 	lens    [][2]float32
 	rays    []geom.Ray
 	hits    []bvh.Hit
 	points  []hit
+	lightUV [][2]float32
 	shadows []shadowRay
 	shots   []geom.Ray
 	blocked []bool
 	probes  []bvh.Hit
 	sums    pixelSums
-	cast    Rays // cast so far
+	stats   Stats // rays cast so far
 }
 
 // shadowRay is the light that a shadow ray carries if nothing stops it.
@@ -55,6 +59,7 @@ type shadowRay struct {
 	weight float32 // E0 of the unit light, divided by the light's rays
 	nl     float32 // N·L, > 0
 	point  int32   // into worker.points
+	number uint32  // which of the pixel's rays to this light
 }
 
 // pixelSums is what a pixel's rays found, for every look: sums over its samples, by surface seen.
@@ -121,6 +126,7 @@ func (c *cast) castPixel(w *worker, x, y int) {
 
 // castCamera casts n camera rays from sample first on and fills w.points.
 func (c *cast) castCamera(w *worker, key sample.Key, x, y int, first uint32, n int) {
+	w.first, w.batch = first, n
 	w.uv = grow(w.uv, n)
 	key.For(purposeFilter).Points(first, w.uv)
 	w.lens = grow(w.lens, n)
@@ -132,7 +138,7 @@ func (c *cast) castCamera(w *worker, key sample.Key, x, y int, first uint32, n i
 		dx, dy := filterOffset(c.settings.Filter, w.uv[i])
 		w.rays[i] = c.camera.ray(float32(x)+dx, float32(y)+dy, w.lens[i][0], w.lens[i][1])
 	}
-	w.cast.Camera += int64(n)
+	w.stats.CameraRays += int64(n)
 	if c.translucent {
 		c.closestOpaque(w, bvh.SeenByCamera, w.rays, w.hits, key.For(purposeOpacity), func(i int) uint32 { return first + uint32(i) })
 	} else {
@@ -174,7 +180,7 @@ func (c *cast) castLight(w *worker, key sample.Key, l int) {
 	c.aimShadows(w, key, l)
 	blocked := w.blocked[:0]
 	if c.lights[l].shadow {
-		w.cast.Shadow += int64(len(w.shots))
+		w.stats.ShadowRays += int64(len(w.shots))
 		w.blocked = grow(w.blocked, len(w.shots))
 		blocked = w.blocked
 		c.occluded(w, key, l, blocked)
@@ -221,4 +227,12 @@ func grow[T any](s []T, n int) []T {
 		return make([]T, n)
 	}
 	return s[:n]
+}
+
+// filterOffset returns where in the raster a sample falls, in pixels from the pixel's upper left corner.
+func filterOffset(f model.Filter, uv [2]float32) (x, y float32) {
+	if f == model.BoxFilter {
+		return uv[0], uv[1]
+	}
+	return 0.5 + sample.BlackmanHarrisOffset(uv[0]), 0.5 + sample.BlackmanHarrisOffset(uv[1])
 }

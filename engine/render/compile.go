@@ -83,7 +83,8 @@ type lookLight struct {
 
 // globe is an area light that the camera sees.
 type globe struct {
-	shape lamp.Lamp
+	shape    lamp.Lamp
+	twoSided bool
 }
 
 // compile makes the cast of a group. build gives each mesh with its hierarchy.
@@ -124,7 +125,7 @@ func compile(c Cast, build func(model.MeshID) (*mesh.Mesh, *bvh.Tree, error)) (*
 	out.scene = bvh.NewScene(stands)
 	for _, l := range first.Lights {
 		if light := p.Lights[l]; light.Kind == model.LightArea && light.Visible {
-			out.globes = append(out.globes, globe{lampOf(light)})
+			out.globes = append(out.globes, globe{lampOf(light), light.TwoSided})
 		}
 	}
 	for _, i := range c.Frames {

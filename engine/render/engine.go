@@ -35,7 +35,7 @@ func NewEngine(source *mesh.Library) *Engine {
 // Options tune Render. The zero value uses every core.
 type Options struct {
 	Threads  int              // goroutines; 0 means one a core
-	Progress func(rays int64) // called now and then from many goroutines with the rays cast since its last call; nil: none
+	Progress func(more Stats) // called now and then from many goroutines with the rays cast since its last call; nil: none
 }
 
 // Result is one frame's outcome.
@@ -43,7 +43,7 @@ type Result struct {
 	Frame   int           // index into the plan's frames
 	Linear  *pixmap.Image // planes R G B A and the passes asked for; see pixmap.Image
 	Display *pixmap.Image // planes R G B A, sRGB-encoded, straight
-	Rays    Rays          // of the whole cast, shared by its frames
+	Stats   Stats         // of the whole cast, shared by its frames
 	Err     error         // why there is no picture; Linear and Display are then nil
 }
 
@@ -71,12 +71,12 @@ func (e *Engine) Render(ctx context.Context, c Cast, o Options) ([]Result, error
 		}
 		return results, nil
 	}
-	films, rays, err := compiled.render(ctx, o)
+	films, stats, err := compiled.render(ctx, o)
 	if err != nil {
 		return nil, err
 	}
 	for k, f := range films {
-		results[k].Rays = rays
+		results[k].Stats = stats
 		if !f.linear.Finite() {
 			results[k].Err = ErrNotFinite
 			continue
@@ -103,7 +103,7 @@ func (e *Engine) build(m model.Mesh) (*mesh.Mesh, *bvh.Tree, error) {
 }
 
 // render casts every tile and returns a film a look.
-func (c *cast) render(ctx context.Context, o Options) ([]*film, Rays, error) {
+func (c *cast) render(ctx context.Context, o Options) ([]*film, Stats, error) {
 	films := make([]*film, len(c.looks))
 	for k := range films {
 		films[k] = newFilm(c.looks[k].settings)
@@ -117,7 +117,7 @@ func (c *cast) render(ctx context.Context, o Options) ([]*film, Rays, error) {
 	workers := make([]worker, threads)
 	err := eachTile(ctx, threads, tiles, func(n int, t tile) {
 		w := &workers[n]
-		before := w.cast
+		before := w.stats
 		for y := t.y0; y < t.y1; y++ {
 			for x := t.x0; x < t.x1; x++ {
 				c.castPixel(w, x, y)
@@ -127,13 +127,13 @@ func (c *cast) render(ctx context.Context, o Options) ([]*film, Rays, error) {
 			}
 		}
 		if o.Progress != nil {
-			o.Progress(w.cast.Camera + w.cast.Shadow - before.Camera - before.Shadow)
+			o.Progress(Stats{CameraRays: w.stats.CameraRays - before.CameraRays, ShadowRays: w.stats.ShadowRays - before.ShadowRays})
 		}
 	})
-	var rays Rays
+	var sum Stats
 	for i := range workers {
-		rays.Camera += workers[i].cast.Camera
-		rays.Shadow += workers[i].cast.Shadow
+		sum.CameraRays += workers[i].stats.CameraRays
+		sum.ShadowRays += workers[i].stats.ShadowRays
 	}
-	return films, rays, err
+	return films, sum, err
 }

@@ -58,14 +58,14 @@ func shapeOf(l model.Light) model.Light {
 	return bare
 }
 
-// Rays counts the rays of a cast.
-type Rays struct {
-	Camera int64 // camera rays
-	Shadow int64 // shadow rays, at most: rays that miss everything or face away need none
+// Stats counts the rays of a cast.
+type Stats struct {
+	CameraRays int64 // camera rays
+	ShadowRays int64 // shadow rays; in an estimate the most that there can be, as rays that miss everything or face away need none
 }
 
 // Estimate returns the most rays that the cast takes.
-func Estimate(c Cast) Rays {
+func Estimate(c Cast) Stats {
 	f := &c.Plan.Frames[c.Frames[0]]
 	camera := int64(f.Settings.Width) * int64(f.Settings.Height) * int64(f.Settings.Samples)
 	type key struct {
@@ -92,5 +92,5 @@ func Estimate(c Cast) Rays {
 			}
 		}
 	}
-	return Rays{Camera: camera, Shadow: camera * perHit}
+	return Stats{CameraRays: camera, ShadowRays: camera * perHit}
 }

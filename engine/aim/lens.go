@@ -1,0 +1,15 @@
+package aim
+
+import "math"
+
+// FocalFromFOV is the focal length, in the unit of the sensor's width, of a lens that sees a vertical field of fovDeg, in (0, 180),
+// on a picture of the aspect ratio, width over height.
+func FocalFromFOV(fovDeg, sensorWidth, aspect float64) float64 {
+	return sensorWidth / aspect / (2 * math.Tan(fovDeg*math.Pi/360))
+}
+
+// ExposureFromEV100 is the exposure in stops at which 1.2 · 2^ev nit reach 1.0. Source: ISO 12232:2019, saturation-based
+// speed: the luminance that saturates is 78/100 of what the meter is set to, over a lens that lets 65 % through.
+func ExposureFromEV100(ev float64) float64 {
+	return -(ev + math.Log2(1.2))
+}
