@@ -99,6 +99,7 @@ var kinds = map[model.MeshKind]builder{
 	model.MeshExtrude:  {"extrude", false, extrude},
 	model.MeshTestForm: {"test form", true, testForm},
 	model.MeshRaw:      {"raw", false, raw},
+	model.MeshFile:     {"file", false, file},
 }
 
 // sized checks name, value pairs that must be sizes in metres.
