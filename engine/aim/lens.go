@@ -8,8 +8,8 @@ func FocalFromFOV(fovDeg, sensorWidth, aspect float64) float64 {
 	return sensorWidth / aspect / (2 * math.Tan(fovDeg*math.Pi/360))
 }
 
-// ExposureFromEV100 is the exposure in stops at which 1.2 · 2^ev nit reach 1.0. Source: ISO 12232:2019, saturation-based
-// speed: the luminance that saturates is 78/100 of what the meter is set to, over a lens that lets 65 % through.
+// ExposureFromEV100 is the exposure in stops at which the luminance that saturates a sensor at that exposure value reaches 1.0.
+// Source: ISO 12232:2019, saturation-based speed: 78 / (100 · q) · 2^EV100 nit = 1.2 · 2^EV100 nit, with q = 0.65 for the lens.
 func ExposureFromEV100(ev float64) float64 {
 	return -(ev + math.Log2(1.2))
 }

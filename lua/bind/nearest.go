@@ -1,0 +1,72 @@
+package bind
+
+import (
+	"fmt"
+	"slices"
+	"strings"
+)
+
+// Nearest returns the known name that a mistyped one is likeliest to mean, the first of equals, or "" where none is near: more than a
+// third of its letters would have to change.
+func Nearest(name string, known []string) string {
+	best, most := "", len([]rune(name))/3+1
+	for _, k := range known {
+		if d := distance(strings.ToLower(name), strings.ToLower(k), most); d < most || (d == most && best == "") {
+			best, most = k, d
+		}
+	}
+	return best
+}
+
+// distance is the number of letters to insert, delete, replace or swap with their neighbour on the way from a to b (optimal
+// string alignment: Damerau 1964 without overlapping edits). Above most it gives most + 1.
+func distance(a, b string, most int) int {
+	from, to := []rune(a), []rune(b)
+	if len(from)-len(to) > most || len(to)-len(from) > most {
+		return most + 1
+	}
+	var before []int
+	last := make([]int, len(to)+1)
+	for j := range last {
+		last[j] = j
+	}
+	for i, r := range from {
+		row := make([]int, len(to)+1)
+		row[0] = i + 1
+		for j, s := range to {
+			cost := 1
+			if r == s {
+				cost = 0
+			}
+			row[j+1] = min(last[j]+cost, last[j+1]+1, row[j]+1)
+			if i > 0 && j > 0 && r == to[j-1] && from[i-1] == s {
+				row[j+1] = min(row[j+1], before[j-1]+1)
+			}
+		}
+		before, last = last, row
+	}
+	return min(last[len(to)], most+1)
+}
+
+// Hint is the end of a message about an unknown name: the nearest known one, and all that are accepted where they are few.
+func Hint(name string, known []string) string {
+	hint := ";"
+	if n := Nearest(name, known); n != "" {
+		hint = fmt.Sprintf("; did you mean %q?", n)
+	}
+	const few = 40
+	switch {
+	case len(known) == 0:
+		return ""
+	case len(known) <= few:
+		return hint + " accepted: " + strings.Join(known, ", ")
+	}
+	return fmt.Sprintf("%s %d names are known", hint, len(known))
+}
+
+// sorted returns the names in the order of the alphabet.
+func sorted(names []string) []string {
+	names = slices.Clone(names)
+	slices.Sort(names)
+	return names
+}
