@@ -24,7 +24,7 @@ func sheetPlan(s *studio, materials int) []int {
 	for i := range materials {
 		thing := base
 		paint := gloss
-		paint.Shininess = float64(4 << (i % 6))
+		paint.Shininess = float64(int(4) << (i % 6))
 		paint.Diffuse = tint.RGB{R: 0.1 * float32(i/6), G: 0.3, B: 0.2}
 		paint.Opacity = 1
 		s.plan.Materials = append(s.plan.Materials, paint)

@@ -197,7 +197,7 @@ func TestSeeThrough(t *testing.T) {
 		if there {
 			things = append(things, card)
 		}
-		sun := model.Light{Kind: model.LightDirectional, Intensity: 3, Direction: [3]float64{-1, -1, 0}}
+		sun := model.Light{Kind: model.LightDirectional, Intensity: 3, Direction: [3]float64{-4, -1, 0}} // the card's shadow falls out of the picture
 		return s.shoot(t, ortho(fromTop, origin, zUp, 3), square(48, 64), s.lights(sun), things...)
 	}
 	none, half, full := shot(1, false), shot(0.5, true), shot(1, true)

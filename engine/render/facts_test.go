@@ -180,7 +180,7 @@ func TestAreaLightSoftensShadows(t *testing.T) {
 		var s studio
 		card := s.thing(model.Mesh{Kind: model.MeshPlane, Size: [3]float64{50, 0, 100}}, matt(0))
 		card.At, card.Hidden = [3]float64{-25, 1, 0}, true
-		img := s.shoot(t, ortho(fromTop, origin, zUp, 1), model.Settings{Width: 64, Height: 1, Samples: 1024, Filter: model.BoxFilter}, s.lights(l), s.thing(floor, matt(0.8)), card)
+		img := s.shoot(t, ortho(fromTop, origin, zUp, 1.0/64), model.Settings{Width: 64, Height: 1, Samples: 1024, Filter: model.BoxFilter}, s.lights(l), s.thing(floor, matt(0.8)), card)
 		g := img.Plane("G")
 		step, most := 0.0, 0.0
 		for i := 1; i < len(g); i++ {

@@ -60,7 +60,7 @@ func TestTextbookSum(t *testing.T) {
 	}
 	for _, tt := range tests {
 		var s studio
-		cam := lens(eye, origin, 1e6)
+		cam := ortho(eye, origin, [3]float64{0, 1, 0}, 1e-7)
 		img := s.shoot(t, cam, square(1, 1), s.lights(ambient, tt.light), s.thing(floor, paint))
 		got := at(img, 0, 0)
 		for k := range got {

@@ -153,7 +153,7 @@ func TestConfigurationFactors(t *testing.T) {
 	}
 }
 
-// TestPenumbraNoise measures the grain of a penumbra at 64 shadow rays a pixel against the same picture at 4096.
+// TestPenumbraNoise measures the grain of a penumbra at 64 shadow rays a pixel against the same picture at 1024.
 func TestPenumbraNoise(t *testing.T) {
 	shot := func(samples int) []float64 {
 		var s studio
@@ -170,7 +170,7 @@ func TestPenumbraNoise(t *testing.T) {
 		}
 		return lightness
 	}
-	got, want := shot(64), shot(4096)
+	got, want := shot(64), shot(1024)
 	sum, pixels := 0.0, 0
 	for i := range got {
 		// Where the floor is neither all lit nor in full shadow; below L* 8 the cube root no longer holds.

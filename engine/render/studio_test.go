@@ -141,7 +141,7 @@ func off(got, want float64) float64 { return math.Abs(got-want) / math.Max(math.
 
 var (
 	floor    = model.Mesh{Kind: model.MeshPlane, Size: [3]float64{20, 0, 20}}
-	ball     = model.Mesh{Kind: model.MeshSphere, Size: [3]float64{1}, Segments: 512}
+	ball     = model.Mesh{Kind: model.MeshSphere, Size: [3]float64{1}, Segments: 160}
 	fromTop  = [3]float64{0, 5, 0}
 	origin   = [3]float64{}
 	zUp      = [3]float64{0, 0, -1}
