@@ -16,6 +16,17 @@ func (v Value) String() string {
 	return v.Text
 }
 
+// String returns the pass's name in the scene language.
+func (p Pass) String() string {
+	names := [...]string{
+		PassDiffuse: "diffuse", PassSpecular: "specular", PassAmbient: "ambient", PassEmission: "emission", PassDepth: "depth", PassNormal: "normal",
+	}
+	if int(p) < len(names) {
+		return names[p]
+	}
+	return "pass " + strconv.Itoa(int(p))
+}
+
 // Tag returns the frame's value of a tag; ok is false where it has none.
 func (f *Frame) Tag(key string) (v Value, ok bool) {
 	for _, t := range f.Tags {
