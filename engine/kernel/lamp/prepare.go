@@ -132,18 +132,23 @@ func (l *Lamp) prepareRectangle(p geom.Vec3d, q *Prepared) {
 	n1 := r.x1 / math.Sqrt(float64(r.x1*r.x1)+z2)
 	n2 := r.y1 / math.Sqrt(float64(r.y1*r.y1)+z2)
 	n3 := -r.x0 / math.Sqrt(float64(r.x0*r.x0)+z2)
-	s0, s1 := num.AsinWide(float64(n0*n1)), num.AsinWide(float64(n1*n2))
-	s2, s3 := num.AsinWide(float64(n2*n3)), num.AsinWide(float64(n3*n0))
 	// An inner angle is acos(-n·n') = π/2 + asin(n·n'); the four sum to 2π + solid angle.
-	r.solidAngle = s0 + s1 + s2 + s3
+	s23 := asinSum(float64(n2*n3), float64(n3*n0))
+	r.solidAngle = asinSum(float64(n0*n1), float64(n1*n2)) + s23
 	r.area = 4 * l.HalfWidth * l.HalfHeight
 	if !(r.solidAngle > smallAngle) {
 		q.mode = byArea
 		return
 	}
 	r.b0, r.b1, r.c0 = n0, n2, z2/(float64(r.y0*r.y0)+z2)
-	r.k = math.Pi - s2 - s3
+	r.k = math.Pi - s23
 	q.mode, q.weight = byAngle, float32(r.solidAngle)
+}
+
+// asinSum returns asin a + asin b as one angle, by the addition theorem.
+func asinSum(a, b float64) float64 {
+	ca, cb := math.Sqrt((1-a)*(1+a)), math.Sqrt((1-b)*(1+b))
+	return num.Atan2Wide(float64(a*cb)+float64(b*ca), float64(ca*cb)-float64(a*b))
 }
 
 // smallAngle in steradians: a rectangle that looks smaller is sampled by area. At this size rounding moves samples by

@@ -67,8 +67,7 @@ func (r *rectangle) direction(x, y float64) (wi geom.Vec3, dist float32) {
 // radius over the ellipse's squared radius. It is constant for a disk seen square on or small, and within a fifth of
 // constant in the worst case, close by and at a grazing angle.
 func (c *ellipticCone) disk(u, v float32) (wi geom.Vec3, dist, weight float32) {
-	x32, y32 := sample.Disk(u, v)
-	x, y := float64(x32), float64(y32)
+	x, y := sample.DiskWide(u, v)
 	if x == 0 && y == 0 {
 		x = 1e-12 // a radius of no length has no direction
 	}
@@ -91,8 +90,7 @@ func (c *ellipticCone) disk(u, v float32) (wi geom.Vec3, dist, weight float32) {
 // sphere maps the square to the disc and that to the cone; the nearer of the two places where the direction meets the
 // sphere gives the distance.
 func (c *ellipticCone) sphere(u, v, weight float32) (wi geom.Vec3, dist, w float32) {
-	x32, y32 := sample.Disk(u, v)
-	x, y := float64(x32), float64(y32)
+	x, y := sample.DiskWide(u, v)
 	h := float64(c.versine * (float64(x*x) + float64(y*y))) // 1 - cos θ
 	k2 := float64(c.versine * (2 - h))                      // (sin θ over the disc's radius)²
 	k := math.Sqrt(k2)

@@ -21,6 +21,17 @@ const (
 	cos6 = 0x1.1ee96d0192650p-29
 	cos7 = -0x1.8f762711e61e0p-37
 
+	// The same with fewer terms, exact at 0, for results in float32: relative errors 2e-11 and 3e-10.
+	shortSin1 = -0x1.555555545e0acp-3
+	shortSin2 = 0x1.11110def2e1c9p-7
+	shortSin3 = -0x1.a013a793b98cep-13
+	shortSin4 = 0x1.6dbe0838a06e9p-19
+
+	shortCos1 = -0x1.fffffffab1da6p-2
+	shortCos2 = 0x1.55554cbb440f1p-5
+	shortCos3 = -0x1.6c0e087f57eebp-10
+	shortCos4 = 0x1.9a6f2bb019f50p-16
+
 	atan1  = -0x1.55555555551e4p-2
 	atan2  = 0x1.9999999934e50p-3
 	atan3  = -0x1.2492490095732p-3
@@ -41,27 +52,49 @@ const (
 	bigAngle   = float64(1<<20) * 1.5707 // reduction in two parts is exact below
 )
 
-// SinCos returns the sine and the cosine of x, in radians. Accurate to 0.501 ulp for |x| < 1.6e6; beyond, where
+// SinCos returns the sine and the cosine of x, in radians. Accurate to 0.51 ulp for |x| < 1.6e6; beyond, where
 // neighbouring float32 lie an eighth of a radian apart, errors grow as |x|·1e-16. NaN for infinite x.
 func SinCos(x float32) (sin, cos float32) {
-	s, c := SinCosWide(float64(x))
+	r, q := quarterTurns(float64(x))
+	s, c := SinCosOctant(r)
+	s, c = turn(s, c, q)
 	return float32(s), float32(c)
 }
 
-// SinCosWide is SinCos in float64, accurate to 1e-15 of the larger of 1 and |x|·1e-16.
+// SinCosOctant returns the sine and the cosine of r, |r| <= π/4, with relative errors below 3e-10: what is needed for
+// float32 results.
+func SinCosOctant(r float64) (sin, cos float64) {
+	r2 := r * r
+	r4 := r2 * r2
+	sin = r + float64(float64(r*r2)*(shortSin1+float64(r2*shortSin2)+float64(r4*(shortSin3+float64(r2*shortSin4)))))
+	cos = 1 + float64(r2*(shortCos1+float64(r2*shortCos2)+float64(r4*(shortCos3+float64(r2*shortCos4)))))
+	return sin, cos
+}
+
+// SinCosWide is SinCos in float64, accurate to 2e-16 for |x| < 1.6e6, as long as x is exact.
 func SinCosWide(x float64) (sin, cos float64) {
-	if !(x > -bigAngle && x < bigAngle) {
-		x = math.Mod(x, 2*math.Pi)
-	}
-	kd := float64(x*(2/math.Pi)) + roundUnit
-	q := math.Float64bits(kd)
-	kd -= roundUnit
-	r := x - float64(kd*halfPiHigh) - float64(kd*halfPiLow)
+	r, q := quarterTurns(x)
 	r2 := r * r
 	r4 := r2 * r2
 	s := r + float64(float64(r*r2)*(sin1+float64(r2*sin2)+float64(r4*(sin3+float64(r2*sin4)+float64(r4*(sin5+float64(r2*sin6)))))))
 	c := 1 + float64(r2*cos1) + float64(r4*(cos2+float64(r2*cos3)+float64(r4*(cos4+float64(r2*cos5)+float64(r4*(cos6+float64(r2*cos7)))))))
-	// Quarter turns without branches: odd ones swap, the second bit turns the sign.
+	return turn(s, c, q)
+}
+
+// quarterTurns returns the rest r, |r| <= π/4, and the number q of quarter turns, modulo 4 in its low bits, of x.
+func quarterTurns(x float64) (r float64, q uint64) {
+	if !(x > -bigAngle && x < bigAngle) {
+		x = math.Mod(x, 2*math.Pi)
+	}
+	k := float64(x*(2/math.Pi)) + roundUnit
+	q = math.Float64bits(k)
+	k -= roundUnit
+	return x - float64(k*halfPiHigh) - float64(k*halfPiLow), q
+}
+
+// turn adds q quarter turns to the angle of sine s and cosine c, without branches: odd ones swap, the second bit turns
+// the sign.
+func turn(s, c float64, q uint64) (sin, cos float64) {
 	sb, cb := math.Float64bits(s), math.Float64bits(c)
 	swap := (sb ^ cb) & -(q & 1)
 	sb ^= swap ^ (q&2)<<62

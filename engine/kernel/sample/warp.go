@@ -12,16 +12,24 @@ import (
 // Disk maps to the unit disc without folds and with little distortion.
 // Source: Shirley & Chiu 1997, "A low distortion map between disk and square"; density 1/π.
 func Disk(u, v float32) (x, y float32) {
-	a, b := float32(2*u)-1, float32(2*v)-1
-	switch {
-	case a == 0 && b == 0:
+	x64, y64 := DiskWide(u, v)
+	return float32(x64), float32(y64)
+}
+
+// DiskWide is Disk before rounding to float32. The larger coordinate of the square is the radius, the ratio of the
+// smaller to it the angle in eighths of a turn; which is which is chosen by bits, as a branch here is a coin toss.
+func DiskWide(u, v float32) (x, y float64) {
+	a, b := float64(float32(2*u)-1), float64(float32(2*v)-1)
+	ab, bb := math.Float64bits(a), math.Float64bits(b)
+	swap := (ab ^ bb) & uint64(int64(ab&^(1<<63)-bb&^(1<<63))>>63)
+	radius := math.Float64frombits(ab ^ swap)
+	if radius == 0 {
 		return 0, 0
-	case max(a, -a) > max(b, -b):
-		s, c := num.SinCos(math.Pi / 4 * (b / a))
-		return a * c, a * s
 	}
-	s, c := num.SinCos(math.Pi / 4 * (a / b))
-	return b * s, b * c
+	s, c := num.SinCosOctant(math.Pi / 4 * (math.Float64frombits(bb^swap) / radius))
+	xb, yb := math.Float64bits(radius*c), math.Float64bits(radius*s)
+	swap = (xb ^ yb) & uint64(int64(ab&^(1<<63)-bb&^(1<<63))>>63)
+	return math.Float64frombits(xb ^ swap), math.Float64frombits(yb ^ swap)
 }
 
 // DiskPDF is the density of Disk, per unit area.
