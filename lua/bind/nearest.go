@@ -6,10 +6,10 @@ import (
 	"strings"
 )
 
-// Nearest returns the known name that a mistyped one is likeliest to mean, the first of equals, or "" where none is near: more than a
-// third of its letters would have to change.
+// Nearest returns the known name that a mistyped one is likeliest to mean, the first of equals, or "" where none is near: about a
+// third of its letters may be wrong.
 func Nearest(name string, known []string) string {
-	best, most := "", len([]rune(name))/3+1
+	best, most := "", (len([]rune(name))+1)/3
 	for _, k := range known {
 		if d := distance(strings.ToLower(name), strings.ToLower(k), most); d < most || (d == most && best == "") {
 			best, most = k, d

@@ -44,12 +44,18 @@ func (e *Env) aspect() float64 {
 var (
 	filterWords = []string{model.BlackmanHarris: "blackman_harris", model.BoxFilter: "box"}
 	toneWords   = []string{model.ToneNeutral: "neutral", model.ToneClip: "clip", model.ToneReinhard: "reinhard", model.ToneACES: "aces"}
-	passWords   = []string{
-		model.PassDiffuse: "diffuse", model.PassSpecular: "specular", model.PassAmbient: "ambient", model.PassEmission: "emission",
-		model.PassDepth: "depth", model.PassNormal: "normal",
-	}
+	passWords   = wordsFrom(model.PassDiffuse, model.PassNormal)
 	formatWords = []string{model.FormatPNG: "png", model.FormatPNG16: "png16", model.FormatEXR: "exr", model.FormatEXRHalf: "exr_half"}
 )
+
+// wordsFrom lists the names of the passes from the first to the last.
+func wordsFrom(first, last model.Pass) []string {
+	var words []string
+	for p := first; p <= last; p++ {
+		words = append(words, p.String())
+	}
+	return words
+}
 
 // FormatNames lists the words for picture formats, by the values of model.Format.
 func FormatNames() []string { return append([]string(nil), formatWords...) }

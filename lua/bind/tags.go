@@ -80,17 +80,6 @@ func readable(s string) bool {
 	return utf8.ValidString(s) && strings.IndexFunc(s, unicode.IsControl) < 0
 }
 
-// valueText is a tag's value as text.
-func valueText(v model.Value) string {
-	switch v.Kind {
-	case model.NumberValue:
-		return number(v.Number)
-	case model.TruthValue:
-		return fmt.Sprint(v.Truth)
-	}
-	return v.Text
-}
-
 // frameName reads a frame's name, or makes it of the tags, "gloss-4_glaze-slate", or of the frame's number.
 func (a *args) frameName(tags []model.Tag) string {
 	var name string
@@ -123,7 +112,7 @@ func (a *args) frameName(tags []model.Tag) string {
 func nameOfTags(tags []model.Tag) string {
 	var parts []string
 	for _, t := range tags {
-		parts = append(parts, fileLetters(t.Key)+"-"+fileLetters(valueText(t.Value)))
+		parts = append(parts, fileLetters(t.Key)+"-"+fileLetters(t.Value.String()))
 	}
 	name := strings.Join(parts, "_")
 	if len(name) > model.MaxNameLength {
