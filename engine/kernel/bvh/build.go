@@ -14,18 +14,26 @@ type BuildOptions struct {
 	Parallel func(n int, do func(i int))
 }
 
+// useWide says that Build lays trees out for the vector walk. Tests switch it off to compare.
+var useWide = haveWide
+
 // Tree is the hierarchy over one mesh's triangles. It keeps copies of the corners and does not refer to the mesh.
 type Tree struct {
 	bounds geom.Box
-	pairs  []pair
-	tris   []tri.Triangle
+
+	// One of two layouts, for the walk that this machine has.
+	pairs []pair
+	tris  []tri.Triangle
+	wide  wideTree
 }
 
 // Bounds returns the box around all triangles that can be hit; empty if there are none.
 func (t *Tree) Bounds() geom.Box { return t.bounds }
 
 // Bytes returns the memory that the tree holds, in bytes.
-func (t *Tree) Bytes() int { return len(t.pairs)*64 + len(t.tris)*48 }
+func (t *Tree) Bytes() int {
+	return len(t.pairs)*64 + len(t.tris)*48 + len(t.wide.nodes)*256 + len(t.wide.blocks)*320
+}
 
 // Build makes the hierarchy over triangles, each three indices into positions. Triangles with an index out of range, a corner that is
 // not finite, or no area are left out and never hit. An empty tree is fine.
@@ -59,9 +67,17 @@ func Build(positions []geom.Vec3, triangles [][3]uint32, o BuildOptions) *Tree {
 		Min: geom.Vec3{X: bounds.lo[0], Y: bounds.lo[1], Z: bounds.lo[2]},
 		Max: geom.Vec3{X: bounds.hi[0], Y: bounds.hi[1], Z: bounds.hi[2]},
 	}
-	b := builder{refs: refs}
+	b := builder{refs: refs, costs: pairCosts}
+	if useWide {
+		b.costs = wideCosts
+	}
 	b.nodes = append(b.nodes, node{})
 	b.split(0, 0, len(refs), bounds, centres, 0)
+	if useWide {
+		t.wide = widen(b.nodes, refs, positions, triangles)
+		t.wide.bounds = t.bounds
+		return t
+	}
 	t.tris = make([]tri.Triangle, len(refs))
 	for i := range refs {
 		f := triangles[refs[i].id]
@@ -119,16 +135,30 @@ type node struct {
 }
 
 const (
-	maxLeaf  = 8   // triangles a leaf holds at most
-	bins     = 16  // split candidates per axis
-	stepCost = 1.5 // of one node, relative to one triangle test
-	maxDepth = 32  // below this, halves by number: at most 32 levels more
+	maxLeaf  = 8  // triangles a leaf holds at most
+	bins     = 16 // split candidates per axis
+	maxDepth = 32 // below this, halves by number: at most 32 levels more
 	binEnd   = 0.99999
 )
+
+// costs tells the surface-area heuristic what a walk's steps cost.
+type costs struct {
+	block int     // triangles tested together
+	step  float32 // cost of a binary node relative to one such test
+}
+
+var (
+	pairCosts = costs{block: 1, step: 1.5}
+	wideCosts = costs{block: 8, step: 0.3}
+)
+
+// tests is the number of tests that n triangles need.
+func (c costs) tests(n int) float32 { return float32((n + c.block - 1) / c.block) }
 
 type builder struct {
 	refs  []ref
 	nodes []node
+	costs costs
 }
 
 type bin struct {
@@ -171,7 +201,7 @@ func (bd *builder) split(at uint32, first, n int, bounds, centres box, depth int
 			for i := bins - 1; i > 0; i-- {
 				acc.join(&table[k][i].b.lo, &table[k][i].b.hi)
 				count += table[k][i].n
-				right[i] = acc.area() * float32(count)
+				right[i] = acc.area() * bd.costs.tests(count)
 			}
 			acc, count = emptyBox(), 0
 			for i := 1; i < bins; i++ {
@@ -180,14 +210,14 @@ func (bd *builder) split(at uint32, first, n int, bounds, centres box, depth int
 				if count == 0 || count == n {
 					continue
 				}
-				if c := acc.area()*float32(count) + right[i]; c < cost {
+				if c := acc.area()*bd.costs.tests(count) + right[i]; c < cost {
 					axis, cut, cost = k, i, c
 				}
 			}
 		}
 	}
 	area := bounds.area()
-	if n <= maxLeaf && (axis < 0 || area*float32(n) <= cost+stepCost*area) {
+	if n <= maxLeaf && (axis < 0 || area*bd.costs.tests(n) <= cost+bd.costs.step*area) {
 		bd.nodes[at].first, bd.nodes[at].count = uint32(first), uint32(n)
 		return
 	}

@@ -51,13 +51,29 @@ func BenchmarkRayFiles(b *testing.B) {
 		b.Fatal(err)
 	}
 	for range b.N {
-		start := time.Now()
-		tree := Build(m.positions, m.triangles, BuildOptions{Parallel: onThreads(threads)})
-		built := time.Since(start)
-		fmt.Printf("build threads=%d seconds=%.4f bytes_per_triangle=%.1f\n", threads, built.Seconds(), float64(tree.Bytes())/float64(len(m.triangles)))
-		s := NewScene([]Placement{{Tree: tree, WorldFromObject: geom.Identity(), Mask: SeenByCamera | CastsShadow}})
-		castFile(s, "portable", mode, threads, rays)
+		for _, wide := range []bool{false, true} {
+			if wide && !haveWide {
+				continue
+			}
+			kernel := "portable"
+			if wide {
+				kernel = "avx2"
+			}
+			start := time.Now()
+			tree := buildFor(wide, m, BuildOptions{Parallel: onThreads(threads)})
+			built := time.Since(start)
+			fmt.Printf("build=%s threads=%d seconds=%.4f bytes_per_triangle=%.1f\n", kernel, threads, built.Seconds(), float64(tree.Bytes())/float64(len(m.triangles)))
+			s := NewScene([]Placement{{Tree: tree, WorldFromObject: geom.Identity(), Mask: SeenByCamera | CastsShadow}})
+			castFile(s, kernel, mode, threads, rays)
+		}
 	}
+}
+
+// buildFor builds a tree for the vector walk or for the portable one.
+func buildFor(wide bool, m *refMesh, o BuildOptions) *Tree {
+	defer func(was bool) { useWide = was }(useWide)
+	useWide = wide
+	return Build(m.positions, m.triangles, o)
 }
 
 // fileBatch is how many rays one call gets, as many as a pixel has samples.

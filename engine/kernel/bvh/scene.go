@@ -77,68 +77,91 @@ func NewScene(placements []Placement) *Scene {
 	return s
 }
 
-const stackSize = 64 // a binary tree is at most 64 levels deep, see maxDepth
-
 // Walker is the scratch space of one goroutine. The zero value works.
-type Walker struct{ stack [stackSize]uint64 }
+type Walker struct {
+	pairs pairStack
+	wide  lanes
+	moved []geom.Ray // rays in object space
+}
 
 // Closest finds for each ray the nearest hit among placements of the mask. Both slices have the same length. Rays' t counts in lengths of
 // Dir and is the same in world and object space.
 func (s *Scene) Closest(w *Walker, mask Mask, rays []geom.Ray, hits []Hit) {
 	hits = hits[:len(rays)]
-	for i := range rays {
-		hits[i] = s.closest(w, mask, rays[i])
+	for i := range hits {
+		hits[i] = Hit{T: inf, Placement: NoHit}
 	}
-}
-
-func (s *Scene) closest(w *Walker, mask Mask, r geom.Ray) Hit {
-	h := Hit{T: inf, Placement: NoHit}
-	best := tri.Best{T: r.TMax}
 	for i := range s.placed {
-		p := &s.placed[i]
-		if p.mask&mask == 0 {
-			continue
-		}
-		o := r
-		if !p.identity {
-			o = p.objectFromWorld.ray(r)
-		}
-		var ready tri.Ray
-		if !ready.Prepare(o, p.tree.bounds) {
-			continue
-		}
-		// Placements come in order of their index, so a tie never beats an earlier one.
-		best.Found, best.Index = false, 0
-		p.tree.closest(w, &ready, &best)
-		if best.Found {
-			h = Hit{best.T, best.U, best.V, best.Index, p.index}
+		if p := &s.placed[i]; p.mask&mask != 0 {
+			p.tree.closest(w, w.move(p, rays), hits, p.index)
 		}
 	}
-	return h
 }
 
 // Occluded reports for each ray whether anything of the mask is hit between its TMin and TMax. Both slices have the same length.
 func (s *Scene) Occluded(w *Walker, mask Mask, rays []geom.Ray, blocked []bool) {
 	blocked = blocked[:len(rays)]
-	for i := range rays {
-		blocked[i] = s.occluded(w, mask, rays[i])
+	clear(blocked)
+	for i := range s.placed {
+		if p := &s.placed[i]; p.mask&mask != 0 {
+			p.tree.occluded(w, w.move(p, rays), blocked)
+		}
 	}
 }
 
-func (s *Scene) occluded(w *Walker, mask Mask, r geom.Ray) bool {
-	for i := range s.placed {
-		p := &s.placed[i]
-		if p.mask&mask == 0 {
+// move returns the rays in p's object space, untouched where that is the world's.
+func (w *Walker) move(p *placed, rays []geom.Ray) []geom.Ray {
+	if p.identity {
+		return rays
+	}
+	w.moved = w.moved[:0]
+	for i := range rays {
+		w.moved = append(w.moved, p.objectFromWorld.ray(rays[i]))
+	}
+	return w.moved
+}
+
+// closest improves hits with what rays, in object space, meet in t.
+func (t *Tree) closest(w *Walker, rays []geom.Ray, hits []Hit, placement uint32) {
+	if len(rays) == 0 {
+		return
+	}
+	if len(t.wide.nodes) > 0 {
+		t.wide.closest(w, rays, hits, placement)
+		return
+	}
+	for i := range rays {
+		var ready tri.Ray
+		if !ready.Prepare(rays[i], t.bounds) {
 			continue
 		}
-		o := r
-		if !p.identity {
-			o = p.objectFromWorld.ray(r)
+		h := &hits[i]
+		best := tri.Best{T: ready.TMax}
+		if h.Placement != NoHit {
+			best.T = h.T
+			if placement < h.Placement { // a tie counts
+				best.Index = ^uint32(0)
+			}
 		}
-		var ready tri.Ray
-		if ready.Prepare(o, p.tree.bounds) && p.tree.occluded(w, &ready) {
-			return true
+		if walkClosest(t.pairs, t.tris, &w.pairs, &ready, &best); best.Found {
+			*h = Hit{best.T, best.U, best.V, best.Index, placement}
 		}
 	}
-	return false
+}
+
+// occluded sets blocked for rays, in object space, that meet anything in t.
+func (t *Tree) occluded(w *Walker, rays []geom.Ray, blocked []bool) {
+	if len(rays) == 0 {
+		return
+	}
+	if len(t.wide.nodes) > 0 {
+		t.wide.occluded(w, rays, blocked)
+		return
+	}
+	for i := range rays {
+		var ready tri.Ray
+		if !blocked[i] && ready.Prepare(rays[i], t.bounds) {
+			blocked[i] = walkOccluded(t.pairs, t.tris, &w.pairs, &ready)
+		}
+	}
 }

@@ -10,12 +10,13 @@ import (
 // and only ever fails as a leaving one. Integer comparisons become conditional moves, float comparisons would be branches.
 func bits(f float32) int32 { return int32(math.Float32bits(f)) }
 
-// closest finds the nearest hit of r in t that beats best.
-func (t *Tree) closest(w *Walker, r *tri.Ray, best *tri.Best) {
-	pairs := t.pairs
-	if len(pairs) == 0 {
-		return
-	}
+const stackSize = 64 // a binary tree is at most 64 levels deep, see maxDepth
+
+// pairStack holds what a walk has still to visit: bits of the entering distance << 32 | child.
+type pairStack [stackSize]uint64
+
+// walkClosest finds the nearest hit of r that beats best.
+func walkClosest(pairs []pair, tris []tri.Triangle, stack *pairStack, r *tri.Ray, best *tri.Best) {
 	nx, ny, nz := r.Near[0], r.Near[1], r.Near[2]
 	fx, fy, fz := r.Far[0], r.Far[1], r.Far[2]
 	ix, iy, iz := r.Inv[0], r.Inv[1], r.Inv[2]
@@ -49,7 +50,7 @@ func (t *Tree) closest(w *Walker, r *tri.Ray, best *tri.Best) {
 					if enter1 < enter0 {
 						at, c1, far = c1, c0, enter0
 					}
-					w.stack[top&(stackSize-1)] = uint64(far)<<32 | uint64(c1)
+					stack[top&(stackSize-1)] = uint64(far)<<32 | uint64(c1)
 					top++
 				}
 			} else if enter1 <= leave1 {
@@ -58,7 +59,7 @@ func (t *Tree) closest(w *Walker, r *tri.Ray, best *tri.Best) {
 				goto pop
 			}
 		}
-		tri.Closest(r, t.tris[at&^leafBit>>3:][:at&7+1], best)
+		tri.Closest(r, tris[at&^leafBit>>3:][:at&7+1], best)
 		tMax = bits(best.T)
 	pop:
 		for {
@@ -66,7 +67,7 @@ func (t *Tree) closest(w *Walker, r *tri.Ray, best *tri.Best) {
 				return
 			}
 			top--
-			e := w.stack[top&(stackSize-1)]
+			e := stack[top&(stackSize-1)]
 			if int32(e>>32) <= tMax {
 				at = uint32(e)
 				break
@@ -75,12 +76,8 @@ func (t *Tree) closest(w *Walker, r *tri.Ray, best *tri.Best) {
 	}
 }
 
-// occluded reports whether anything in t is hit between r.TMin and r.TMax.
-func (t *Tree) occluded(w *Walker, r *tri.Ray) bool {
-	pairs := t.pairs
-	if len(pairs) == 0 {
-		return false
-	}
+// walkOccluded reports whether anything is hit between r.TMin and r.TMax.
+func walkOccluded(pairs []pair, tris []tri.Triangle, stack *pairStack, r *tri.Ray) bool {
 	nx, ny, nz := r.Near[0], r.Near[1], r.Near[2]
 	fx, fy, fz := r.Far[0], r.Far[1], r.Far[2]
 	ix, iy, iz := r.Inv[0], r.Inv[1], r.Inv[2]
@@ -113,7 +110,7 @@ func (t *Tree) occluded(w *Walker, r *tri.Ray) bool {
 					if enter1 < enter0 {
 						at, c1 = c1, c0
 					}
-					w.stack[top&(stackSize-1)] = uint64(c1)
+					stack[top&(stackSize-1)] = uint64(c1)
 					top++
 				}
 			} else if enter1 <= leave1 {
@@ -122,7 +119,7 @@ func (t *Tree) occluded(w *Walker, r *tri.Ray) bool {
 				goto pop
 			}
 		}
-		if tri.Any(r, t.tris[at&^leafBit>>3:][:at&7+1]) {
+		if tri.Any(r, tris[at&^leafBit>>3:][:at&7+1]) {
 			return true
 		}
 	pop:
@@ -130,6 +127,6 @@ func (t *Tree) occluded(w *Walker, r *tri.Ray) bool {
 			return false
 		}
 		top--
-		at = uint32(w.stack[top&(stackSize-1)])
+		at = uint32(stack[top&(stackSize-1)])
 	}
 }
