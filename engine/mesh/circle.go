@@ -7,7 +7,11 @@ import "math"
 func circle(n int) (cos, sin []float64) {
 	cos, sin = make([]float64, n), make([]float64, n)
 	for i := range n {
-		cos[i], sin[i] = octant(8*i/n, float64(8*i%n)/float64(n))
+		k, part := 8*i/n, 8*i%n
+		if k&1 != 0 {
+			part = n - part
+		}
+		cos[i], sin[i] = octant(k, float64(part)/float64(n))
 	}
 	return cos, sin
 }
@@ -17,15 +21,19 @@ func circle(n int) (cos, sin []float64) {
 func cosSinDeg(deg float64) (cos, sin float64) {
 	eighths := deg / 45
 	whole := math.Floor(eighths)
-	return octant(int(whole)&7, eighths-whole)
+	k, f := int(whole)&7, eighths-whole
+	if k&1 != 0 {
+		f = 1 - f
+	}
+	return octant(k, f)
 }
 
-// octant returns the cosine and sine of (k + f)·45°, k in [0, 8), f in [0, 1).
+// octant returns the cosine and sine of an angle in octant k of [0, 8) that is f·45° from the nearest axis, f in [0, 1].
 func octant(k int, f float64) (cos, sin float64) {
-	if k&1 != 0 {
-		f = 1 - f // odd octants run back from the next axis
+	c, s := math.Sqrt2/2, math.Sqrt2/2 // on the diagonal, where the two series differ in the last bit
+	if f < 1 {
+		c, s = cosSinSmall(float64(f * (math.Pi / 4)))
 	}
-	c, s := cosSinSmall(float64(f * (math.Pi / 4)))
 	switch k {
 	case 0:
 		return c, s

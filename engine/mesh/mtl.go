@@ -11,7 +11,7 @@ import (
 // neutral is the material of what no library describes, and the start of each that one does: a matt grey.
 func neutral() model.Material {
 	return model.Material{
-		Kind: model.BlinnPhong, Diffuse: tint.Grey(0.5), Ambient: tint.Grey(0.5), Shininess: 32, Opacity: 1,
+		Kind: model.BlinnPhong, Diffuse: tint.Grey(0.5), Ambient: tint.Grey(0.5), Shininess: 30, Opacity: 1,
 	}
 }
 

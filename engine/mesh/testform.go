@@ -31,13 +31,13 @@ func testForm(m model.Mesh, _ Reader) (*Mesh, error) {
 	p.line(5)
 	p.corner(-32)
 	p.arc(-26, 113) // waist
-	p.arc(55, 90)   // belly
-	p.corner(40)
-	p.line(16.5)    // shoulder
+	p.arc(58, 92)   // belly
+	p.corner(38)
+	p.line(20)      // shoulder
 	p.arc(-14, 145) // neck
-	p.line(12)
-	p.arc(7, 160) // lip
-	p.line(6)
+	p.line(16)
+	p.arc(6, 160) // lip
+	p.line(5)
 	p.corner(55)
 	_, sin := cosSinDeg(55)
 	p.arc(-p.r/sin, 55) // bowl, ending level on the axis
