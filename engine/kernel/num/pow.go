@@ -70,7 +70,7 @@ func artanhSmall(t float64) float64 {
 }
 
 // AtanhWide returns the inverse hyperbolic tangent of t in (-1, 1), half the logarithm of (1+t)/(1-t), accurate to
-// 4e-16 relative. It is ±Inf at ±1 and NaN beyond. It sums a long series: not for inner loops.
+// 1e-15 relative. It is ±Inf at ±1 and NaN beyond. It sums a long series: not for inner loops.
 func AtanhWide(t float64) float64 {
 	if math.Abs(t) <= 1.0/3 {
 		return artanhSmall(t)

@@ -105,7 +105,7 @@ func turn(s, c float64, q uint64) (sin, cos float64) {
 // Atan2 returns the angle of the point (x, y), in [-π, π]. Signs of zero count as in IEEE 754. Accurate to 0.501 ulp.
 func Atan2(y, x float32) float32 { return float32(Atan2Wide(float64(y), float64(x))) }
 
-// Atan2Wide is Atan2 in float64, accurate to 3e-16 relative.
+// Atan2Wide is Atan2 in float64, accurate to 7e-16 relative.
 func Atan2Wide(y, x float64) float64 {
 	ay, ax := math.Abs(y), math.Abs(x)
 	num, den := ay, ax
@@ -152,11 +152,11 @@ func atanSmall(t float64) float64 {
 // Acos returns the angle in [0, π] whose cosine is x in [-1, 1]; NaN outside. Accurate to 0.501 ulp.
 func Acos(x float32) float32 { return float32(AcosWide(float64(x))) }
 
-// AcosWide is Acos in float64, accurate to 4e-16 relative.
+// AcosWide is Acos in float64, accurate to 1e-15 relative.
 func AcosWide(x float64) float64 { return Atan2Wide(math.Sqrt((1-x)*(1+x)), x) }
 
 // Asin returns the angle in [-π/2, π/2] whose sine is x in [-1, 1]; NaN outside. Accurate to 0.501 ulp.
 func Asin(x float32) float32 { return float32(AsinWide(float64(x))) }
 
-// AsinWide is Asin in float64, accurate to 4e-16 relative.
+// AsinWide is Asin in float64, accurate to 1e-15 relative.
 func AsinWide(x float64) float64 { return Atan2Wide(x, math.Sqrt((1-x)*(1+x))) }
