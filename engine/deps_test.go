@@ -34,7 +34,7 @@ var folders = map[string]string{
 	"geom": "engine/kernel/geom", "num": "engine/kernel/num", "sample": "engine/kernel/sample", "bvh": "engine/kernel/bvh",
 	"tri": "engine/kernel/tri", "shade": "engine/kernel/shade", "lamp": "engine/kernel/lamp", "tint": "engine/kernel/tint",
 	"model": "engine/model", "mesh": "engine/mesh", "pixmap": "engine/pixmap", "aim": "engine/aim", "render": "engine/render",
-	"run": "engine/run", "bind": "lua/bind", "host": "lua/host", "prelude": "lua/prelude",
+	"run": "engine/run", "bind": "lua/bind", "host": "lua/host", "prelude": "lua/prelude", "api": "lua/api",
 	"encode": "output/encode", "compare": "output/compare", "sheet": "output/sheet", "report": "output/report",
 }
 
