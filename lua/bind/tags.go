@@ -112,7 +112,11 @@ func (a *args) frameName(tags []model.Tag) string {
 func nameOfTags(tags []model.Tag) string {
 	var parts []string
 	for _, t := range tags {
-		parts = append(parts, fileLetters(t.Key)+"-"+fileLetters(t.Value.String()))
+		value := t.Value.String()
+		if t.Value.Kind == model.NumberValue {
+			value = strings.ReplaceAll(number(t.Value.Number), "+", "") // 1e+20 must not read as 1e-20
+		}
+		parts = append(parts, fileLetters(t.Key)+"-"+fileLetters(value))
 	}
 	name := strings.Join(parts, "_")
 	if len(name) > model.MaxNameLength {
