@@ -1,0 +1,424 @@
+package sheet
+
+import (
+	"image"
+	"math"
+	"slices"
+
+	"lampbook/engine/model"
+)
+
+// Measures of a page, in pixels where nothing else is said.
+const (
+	maxSide     = 12_000 // a page's sides
+	leastScaled = 240    // a tile's longer side, under which pages are split rather than tiles made smaller
+	minTileSide = 16     // of a sheet's own Tile
+	maxTileSide = 4_096
+	minModule   = 12
+	minMeasure  = 20 // modules: the narrowest column of tiles, so that title and foot have room
+)
+
+// Sizes of type and distances, in modules.
+const (
+	titleSize   = 1.4
+	headingSize = 0.8
+	captionSize = 0.65
+	footSize    = 0.55
+)
+
+// textItem is a line of text in its place; x and baseline are where it begins.
+type textItem struct {
+	line        line
+	x, baseline float64
+}
+
+// tileItem is a cell of the grid.
+type tileItem struct {
+	cell image.Rectangle
+	place
+}
+
+// plate is one page, laid out to the pixel.
+type plate struct {
+	width, height int
+	module        float64
+	texts         []textItem
+	tiles         []tileItem
+}
+
+// composer lays plates of one sheet.
+type composer struct {
+	plan      *model.Plan
+	sheet     *model.Sheet
+	pivot     *pivot
+	set       *setter
+	words     map[string]wording
+	foot      [][]string // paragraphs of items
+	cell      image.Point
+	scale     float64 // of tiles against the sheet's own size for them; 1 or less
+	page      int     // which of its table's pages this is, from 0
+	pageCount int
+}
+
+// part is what of a table stands on a plate. A sheet with one axis has tiles from first on, perLine in each line.
+type part struct {
+	table         *table
+	row0, row1    int
+	col0, col1    int
+	perLine       int // one axis; otherwise 0
+	columnsInLine int // tiles side by side
+}
+
+func (c *composer) wholeTable(t *table) part {
+	return c.cut(t, 0, max(1, len(t.rows)), 0, len(t.columns))
+}
+
+// cut takes rows row0 to row1 and columns col0 to col1 of a table.
+func (c *composer) cut(t *table, row0, row1, col0, col1 int) part {
+	p := part{table: t, row0: row0, row1: row1, col0: col0, col1: col1, columnsInLine: col1 - col0}
+	if c.pivot.oneAxis() {
+		p.perLine = c.perLine(col1 - col0)
+		p.columnsInLine = p.perLine
+	}
+	return p
+}
+
+// perLine is how many of n tiles stand in a line. By default it brings the sheet near to √2 : 1, as near as any number can but for a
+// fifth; within that, what leaves the fewest places empty in the last line.
+func (c *composer) perLine(n int) int {
+	if k := c.sheet.PerLine; k > 0 {
+		return min(k, n)
+	}
+	u := c.moduleFor(float64(c.cell.X), float64(c.cell.Y))
+	miss := func(k int) float64 {
+		lines := (n + k - 1) / k
+		w := 5*u + float64(k)*(float64(c.cell.X)+u/2)
+		h := 10*u + float64(lines)*(float64(c.cell.Y)+2*u)
+		return math.Abs(math.Log(w / h / math.Sqrt2))
+	}
+	nearest := math.Inf(1)
+	for k := 1; k <= n; k++ {
+		nearest = min(nearest, miss(k))
+	}
+	best, empty := 1, n+1
+	for k := 1; k <= n; k++ {
+		e := (n+k-1)/k*k - n
+		if m := miss(k); m <= nearest+math.Log(1.2) && (e < empty || e == empty && m < miss(best)) {
+			best, empty = k, e
+		}
+	}
+	return best
+}
+
+// moduleFor is a fortieth of the shorter side, at least minModule and at most a tenth of a tile's shorter side, so that on a large
+// sheet headings still fit their tiles.
+func (c *composer) moduleFor(width, height float64) float64 {
+	most := max(minModule, math.Floor(float64(min(c.cell.X, c.cell.Y))/10))
+	return min(max(minModule, math.Floor(min(width, height)/40)), most)
+}
+
+// compose lays out a part. The module follows from the page's size and the page's size from the module: it grows from the
+// least until the two agree.
+func (c *composer) compose(p part) *plate {
+	u := float64(minModule)
+	for {
+		pl := c.composeWith(p, u)
+		next := c.moduleFor(float64(pl.width), float64(pl.height))
+		if next <= u {
+			return pl
+		}
+		u = next
+	}
+}
+
+func sized(u, modules float64) float64 { return max(minSize, math.Round(4*u*modules)/4) }
+
+// grid is the x and y of tiles while a plate is laid.
+type grid struct {
+	u            float64
+	plate        *plate
+	left         float64 // of the first tile
+	measure      float64 // width of the tiles' column, at least minMeasure modules
+	heading      style
+	name         style
+	headingLead  float64 // between baselines
+	captionStyle style
+	captionLead  float64 // 0 without captions
+}
+
+func (c *composer) composeWith(p part, u float64) *plate {
+	g := &grid{u: u, plate: &plate{module: u}}
+	g.heading = style{sized(u, headingSize), medium, firstInk}
+	g.name = style{sized(u, headingSize), regular, secondInk}
+	g.headingLead = math.Ceil(max(u, 1.25*g.heading.size))
+	g.captionStyle = style{sized(u, captionSize), regular, secondInk}
+	if c.sheet.Caption != "" {
+		g.captionLead = math.Ceil(max(u, 1.4*g.captionStyle.size))
+	}
+	xs, right := c.columnPlaces(p, u)
+	rowHeads, headWidth := c.rowHeadings(p, g, right)
+	g.left = max(3*u, math.Ceil(2*u+headWidth))
+	g.measure = max(right, minMeasure*u)
+	g.plate.width = int(math.Ceil(g.left + g.measure + 2*u))
+	y := c.head(p, g)
+	if c.pivot.oneAxis() {
+		y = c.oneAxisTiles(p, g, xs, y)
+	} else {
+		y = c.columnHeadings(p, g, xs, y)
+		y = c.tableTiles(p, g, xs, rowHeads, y)
+	}
+	c.footLines(g, y)
+	return g.plate
+}
+
+// put places a line; without ink it is left out.
+func (g *grid) put(l line, x, baseline float64) {
+	if l.left != l.right {
+		g.plate.texts = append(g.plate.texts, textItem{l, x, baseline})
+	}
+}
+
+// putAll places lines under one another and returns the last baseline.
+func (g *grid) putAll(lines []line, x, baseline, lead float64) float64 {
+	for i, l := range lines {
+		g.put(l, x, baseline+float64(i)*lead)
+	}
+	return baseline + float64(max(0, len(lines)-1))*lead
+}
+
+// heading is what stands over a column.
+type heading struct {
+	lines []line
+	x     float64
+}
+
+// stand places headings side by side so that their last lines share a baseline, which it returns: that of the deepest, begun at y.
+func (g *grid) stand(headings []heading, y float64, deepest int) float64 {
+	for _, h := range headings {
+		g.putAll(h.lines, h.x, y+float64(deepest-len(h.lines))*g.headingLead, g.headingLead)
+	}
+	return y + float64(deepest-1)*g.headingLead
+}
+
+// columnPlaces returns where each column begins, from the first tile's left, and where the last ends. Groups of an outer
+// heading stand a gutter further apart.
+func (c *composer) columnPlaces(p part, u float64) (xs []float64, right float64) {
+	gutter := math.Ceil(u / 2)
+	x := 0.0
+	for k := range p.columnsInLine {
+		if k > 0 {
+			x += gutter
+			if !c.pivot.oneAxis() && groupBegins(p.table.columns, p.col0+k) {
+				x += gutter
+			}
+		}
+		xs = append(xs, x)
+		x += float64(c.cell.X)
+	}
+	return xs, x
+}
+
+// groupBegins reports whether entry i of an axis has another outer heading than the one before it.
+func groupBegins(axis [][]model.Value, i int) bool {
+	n := len(axis[i])
+	return n > 1 && !slices.Equal(axis[i][:n-1], axis[i-1][:n-1])
+}
+
+// head lays title and subject, and returns the baseline of the last.
+func (c *composer) head(p part, g *grid) float64 {
+	u := g.u
+	title := style{sized(u, titleSize), medium, firstInk}
+	y := 2*u + math.Round(c.set.capHeight(title))
+	y = g.putAll(c.set.wrap(c.title(), title, g.measure, 3), g.left, y, math.Ceil(1.25*title.size))
+	y += math.Ceil(1.5 * u)
+	return g.putAll(c.set.wrap(c.subject(p), g.name, g.measure, 3), g.left, y, g.headingLead)
+}
+
+// columnHeadings lays the headings of a table's columns, an outer tag over an inner, and returns the tiles' top.
+func (c *composer) columnHeadings(p part, g *grid, xs []float64, y float64) float64 {
+	y += math.Ceil(2.25*g.u) - g.headingLead
+	keys := c.pivot.columnKeys
+	for k, key := range keys {
+		y += g.headingLead
+		if k > 0 {
+			y += math.Ceil(g.headingLead / 4)
+		}
+		label, _ := labelOf(key)
+		g.put(c.set.fit(label, g.name, g.measure), g.left, y)
+		y += g.headingLead
+		var headings []heading
+		deepest := 1
+		for i := 0; i < len(xs); {
+			values := p.table.columns[p.col0+i]
+			n := 1
+			for i+n < len(xs) && k < len(keys)-1 && slices.Equal(values[:k+1], p.table.columns[p.col0+i+n][:k+1]) {
+				n++
+			}
+			room := xs[i+n-1] + float64(c.cell.X) - xs[i]
+			h := heading{c.set.wrap(c.words[key].text(values[k]), g.heading, room, 3), g.left + xs[i]}
+			headings = append(headings, h)
+			deepest = max(deepest, len(h.lines))
+			i += n
+		}
+		y = g.stand(headings, y, deepest)
+	}
+	if len(c.pivot.rowKeys) > 0 {
+		c.rowNames(p, g, y)
+	}
+	return y + math.Ceil(g.u/2)
+}
+
+// rowHeading is the column of headings that belongs to one tag of the rows.
+type rowHeading struct {
+	x, width float64 // from the margin, 2 modules from the sheet's left
+	align    bool    // numbers, lined up at their decimal points
+	whole    float64 // width of the widest whole part
+}
+
+// rowHeadings measures the headings that hang at the left, and how much room they take with the distance to the tiles.
+func (c *composer) rowHeadings(p part, g *grid, right float64) (columns []rowHeading, total float64) {
+	if len(c.pivot.rowKeys) == 0 {
+		return nil, 0
+	}
+	most := max(8*g.u, right/5)
+	x := 0.0
+	for k, key := range c.pivot.rowKeys {
+		h := rowHeading{x: x, align: true}
+		label, _ := labelOf(key)
+		widest := c.set.set(shortened(label), g.name).extent()
+		seen := map[model.Value]bool{}
+		tail := 0.0
+		for r := p.row0; r < p.row1; r++ {
+			v := p.table.rows[r][k]
+			if seen[v] {
+				continue
+			}
+			seen[v] = true
+			text := shortened(c.words[key].text(v))
+			whole, all := c.set.set(wholePart(text), g.heading).width, c.set.set(text, g.heading).extent()
+			widest = max(widest, all)
+			h.align = h.align && v.Kind == model.NumberValue
+			h.whole = max(h.whole, whole)
+			tail = max(tail, all-whole)
+		}
+		if h.align {
+			widest = max(widest, h.whole+tail)
+		}
+		h.width = math.Ceil(min(widest, most))
+		h.align = h.align && h.whole+tail <= h.width
+		columns = append(columns, h)
+		x += h.width + math.Ceil(0.75*g.u)
+	}
+	return columns, x
+}
+
+// rowNames says the names of the rows' tags on the baseline of the column headings.
+func (c *composer) rowNames(p part, g *grid, y float64) {
+	columns, _ := c.rowHeadings(p, g, g.measure)
+	for k, key := range c.pivot.rowKeys {
+		label, _ := labelOf(key)
+		g.put(c.set.fit(label, g.name, columns[k].width), 2*g.u+columns[k].x, y)
+	}
+}
+
+// tableTiles lays the tiles of a table with the headings of its rows, and returns the bottom.
+func (c *composer) tableTiles(p part, g *grid, xs []float64, heads []rowHeading, y float64) float64 {
+	gutter := math.Ceil(g.u / 2)
+	drop := math.Round(c.set.capHeight(g.heading))
+	pitch := float64(c.cell.Y) + g.captionLead
+	room := max(1, int((pitch-drop)/g.headingLead)+1)
+	for r := p.row0; r < p.row1; r++ {
+		fresh := r == p.row0
+		if r > p.row0 {
+			y += gutter
+			if groupBegins(p.table.rows, r) {
+				y += gutter
+			}
+		}
+		for k, key := range c.pivot.rowKeys {
+			if k < len(heads)-1 && !fresh && slices.Equal(p.table.rows[r][:k+1], p.table.rows[r-1][:k+1]) {
+				continue
+			}
+			h := heads[k]
+			text := c.words[key].text(p.table.rows[r][k])
+			x := 2*g.u + h.x
+			if h.align {
+				x += h.whole - c.set.set(wholePart(text), g.heading).width
+			}
+			g.putAll(c.set.wrap(text, g.heading, h.width, min(3, room)), x, y+drop, g.headingLead)
+		}
+		for k := range p.columnsInLine {
+			c.tile(p, g, r*len(p.table.columns)+p.col0+k, xs[k], y)
+		}
+		y += pitch
+	}
+	return y
+}
+
+// oneAxisTiles lays lines of tiles, each under its own heading, and returns the bottom.
+func (c *composer) oneAxisTiles(p part, g *grid, xs []float64, y float64) float64 {
+	y += math.Ceil(2.25*g.u) - g.headingLead
+	if !c.pivot.byName {
+		y += g.headingLead
+		g.put(c.set.fit(labels(c.pivot.columnKeys, "and"), g.name, g.measure), g.left, y)
+	}
+	for n := p.col0; n < p.col1; n += p.perLine {
+		if n > p.col0 {
+			y += math.Ceil(g.u / 2)
+		}
+		y += g.headingLead
+		var headings []heading
+		deepest := 1
+		for k := 0; k < p.perLine && n+k < p.col1; k++ {
+			h := heading{c.set.wrap(c.headingOf(p.table.columns[n+k]), g.heading, float64(c.cell.X), 3), g.left + xs[k]}
+			headings = append(headings, h)
+			deepest = max(deepest, len(h.lines))
+		}
+		y = g.stand(headings, y, deepest) + math.Ceil(g.u/2)
+		for k := 0; k < p.perLine && n+k < p.col1; k++ {
+			c.tile(p, g, n+k, xs[k], y)
+		}
+		y += float64(c.cell.Y) + g.captionLead
+	}
+	return y
+}
+
+// tile lays one cell and its caption.
+func (c *composer) tile(p part, g *grid, cell int, x, y float64) {
+	at := image.Pt(int(g.left+x), int(y))
+	pl := p.table.cells[cell]
+	g.plate.tiles = append(g.plate.tiles, tileItem{image.Rectangle{at, at.Add(c.cell)}, pl})
+	if g.captionLead > 0 && pl.frame >= 0 {
+		text := captionOf(c.sheet.Caption, &c.plan.Frames[pl.frame], pl.pass, c.words)
+		g.put(c.set.fit(text, g.captionStyle, float64(c.cell.X)), g.left+x, y+float64(c.cell.Y)+math.Round(0.72*g.captionLead))
+	}
+}
+
+// footLines lays the foot, a paragraph after another, and closes the page.
+func (c *composer) footLines(g *grid, y float64) {
+	st := style{sized(g.u, footSize), regular, secondInk}
+	lead := math.Ceil(max(0.8*g.u, 1.35*st.size))
+	gap := math.Ceil(2 * st.size)
+	y += math.Ceil(1.5 * g.u)
+	for n, items := range c.foot {
+		if n > 0 {
+			y += lead
+		}
+		x := 0.0
+		for _, item := range items {
+			lines := c.set.wrap(item, st, g.measure, 4)
+			if x > 0 && (len(lines) > 1 || x+gap+lines[0].extent() > g.measure) {
+				y += lead
+				x = 0
+			} else if x > 0 {
+				x += gap
+			}
+			y = g.putAll(lines, g.left+x, y, lead)
+			x += lines[len(lines)-1].extent()
+			if len(lines) > 1 {
+				x = g.measure // what follows begins a line of its own
+			}
+		}
+	}
+	g.plate.height = int(math.Ceil(y + 2*g.u))
+}

@@ -1,0 +1,214 @@
+package sheet
+
+import (
+	"fmt"
+	"math"
+	"strconv"
+	"strings"
+
+	"lampbook/engine/model"
+)
+
+// Characters of a compositor's case.
+const (
+	trueMinus = "\u2212"
+	thinSpace = "\u2009"
+	times     = "\u00d7"
+	degree    = "\u00b0"
+	ellipsis  = "\u2026"
+)
+
+// units are the endings of a tag's name that say in what its numbers are, and how the unit is written after them.
+var units = [...]struct{ ending, unit string }{
+	{"_deg", degree}, {"_mm", thinSpace + "mm"}, {"_cm", thinSpace + "cm"}, {"_m", thinSpace + "m"}, {"_cd", thinSpace + "cd"},
+	{"_lm", thinSpace + "lm"}, {"_lx", thinSpace + "lx"}, {"_nit", thinSpace + "nit"}, {"_percent", thinSpace + "%"},
+	{"_stops", thinSpace + "stops"}, {"_kelvin", thinSpace + "K"},
+}
+
+// labelOf is how a tag's name reads, and the unit that its ending states.
+func labelOf(key string) (label, unit string) {
+	for _, u := range units {
+		if rest, ok := strings.CutSuffix(key, u.ending); ok && rest != "" {
+			return strings.ReplaceAll(rest, "_", " "), u.unit
+		}
+	}
+	return strings.ReplaceAll(key, "_", " "), ""
+}
+
+// labels is list for tag names.
+func labels(keys []string, last string) string {
+	var all []string
+	for _, k := range keys {
+		label, _ := labelOf(k)
+		all = append(all, label)
+	}
+	return list(all, last)
+}
+
+// wording writes the values of one tag alike: numbers to as many digits as tell all of them apart.
+type wording struct {
+	unit   string
+	digits int // significant
+}
+
+// wordingOf finds the wording for all values of a tag that a sheet shows.
+func wordingOf(key string, values []model.Value) wording {
+	_, unit := labelOf(key)
+	w := wording{unit: unit, digits: 4}
+	for ; w.digits < 17; w.digits++ {
+		byText := map[string]float64{}
+		clash := false
+		for _, v := range values {
+			if v.Kind != model.NumberValue {
+				continue
+			}
+			text := number(v.Number, w.digits)
+			other, ok := byText[text]
+			clash = clash || ok && other != v.Number
+			byText[text] = v.Number
+		}
+		if !clash {
+			break
+		}
+	}
+	return w
+}
+
+// text writes a value.
+func (w wording) text(v model.Value) string {
+	switch v.Kind {
+	case model.NumberValue:
+		return number(v.Number, w.digits) + w.unit
+	case model.TruthValue:
+		if v.Truth {
+			return "yes"
+		}
+		return "no"
+	}
+	return v.Text
+}
+
+// number writes x with at most the given significant digits (whole numbers up to ten thousand million always in full),
+// a true minus, thin spaces between thousands from five digits on, and a power of ten where it would run long.
+func number(x float64, digits int) string {
+	size := math.Abs(x)
+	sign := ""
+	if x < 0 {
+		sign = trueMinus
+	}
+	if size == math.Trunc(size) && size < 1e10 {
+		return sign + grouped(strconv.FormatFloat(size, 'f', 0, 64))
+	}
+	rounded, err := strconv.ParseFloat(strconv.FormatFloat(size, 'g', digits, 64), 64)
+	if err != nil || math.IsInf(rounded, 0) || rounded != rounded {
+		return sign + strconv.FormatFloat(size, 'g', -1, 64)
+	}
+	if rounded >= 1e-4 && rounded < 1e10 {
+		whole, fraction, found := strings.Cut(strconv.FormatFloat(rounded, 'f', -1, 64), ".")
+		if !found {
+			return sign + grouped(whole)
+		}
+		return sign + grouped(whole) + "." + fraction
+	}
+	mantissa, exponent, _ := strings.Cut(strconv.FormatFloat(rounded, 'e', -1, 64), "e")
+	n, _ := strconv.Atoi(exponent) // strconv wrote it
+	return sign + mantissa + thinSpace + times + thinSpace + "10" + superscript.Replace(strconv.Itoa(n))
+}
+
+var superscript = strings.NewReplacer("-", "⁻", "0", "⁰", "1", "¹", "2", "²", "3", "³", "4", "⁴", "5", "⁵", "6", "⁶", "7", "⁷", "8", "⁸", "9", "⁹")
+
+// grouped sets thin spaces between thousands, from five digits on (ISO 80000-1:2022, 7.3.1).
+func grouped(digits string) string {
+	if len(digits) < 5 {
+		return digits
+	}
+	var b strings.Builder
+	for i, d := range digits {
+		if i > 0 && (len(digits)-i)%3 == 0 {
+			b.WriteString(thinSpace)
+		}
+		b.WriteRune(d)
+	}
+	return b.String()
+}
+
+// wholePart is the part of a written number left of its decimal point, or of its unit: what decimal alignment lines up.
+func wholePart(text string) string {
+	for i, r := range text {
+		if (r < '0' || r > '9') && string(r) != trueMinus && string(r) != thinSpace {
+			return text[:i]
+		}
+		if string(r) == thinSpace {
+			// A thin space parts thousands only where a digit follows.
+			rest := text[i+len(thinSpace):]
+			if rest == "" || rest[0] < '0' || rest[0] > '9' {
+				return text[:i]
+			}
+		}
+	}
+	return text
+}
+
+// captionName is the place of the frame's own name in a caption.
+const captionName = "name"
+
+// captionKeys lists what a caption's braces name.
+func captionKeys(template string) []string {
+	var keys []string
+	eachPart(template, func(text, key string) {
+		if key != "" {
+			keys = append(keys, key)
+		}
+	})
+	return keys
+}
+
+// captionOf fills a caption for a frame. A tag that the frame lacks leaves nothing.
+func captionOf(template string, f *model.Frame, pass string, words map[string]wording) string {
+	var b strings.Builder
+	eachPart(template, func(text, key string) {
+		b.WriteString(text)
+		switch v, ok := valueOf(f, pass, key); {
+		case key == captionName:
+			b.WriteString(f.Name)
+		case key != "" && ok:
+			b.WriteString(words[key].text(v))
+		}
+	})
+	return b.String()
+}
+
+// eachPart cuts a template into text and, after it, the key in braces or "". A brace without its partner is text.
+func eachPart(template string, part func(text, key string)) {
+	for template != "" {
+		open := strings.IndexByte(template, '{')
+		if open < 0 {
+			part(template, "")
+			return
+		}
+		length := strings.IndexByte(template[open:], '}')
+		if length < 2 {
+			part(template[:open+1], "")
+			template = template[open+1:]
+			continue
+		}
+		part(template[:open], template[open+1:open+length])
+		template = template[open+length+1:]
+	}
+}
+
+// span says what of a tag a sheet shows: "gloss 4 to 256" for numbers, the tag's name alone for words.
+func span(key string, values []model.Value, w wording) string {
+	label, _ := labelOf(key)
+	if len(values) == 1 {
+		return label + " " + w.text(values[0])
+	}
+	low, high := math.Inf(1), math.Inf(-1)
+	for _, v := range values {
+		if v.Kind != model.NumberValue {
+			return label
+		}
+		low, high = min(low, v.Number), max(high, v.Number)
+	}
+	return fmt.Sprintf("%s %s to %s", label, number(low, w.digits), w.text(model.Value{Kind: model.NumberValue, Number: high}))
+}
