@@ -112,9 +112,10 @@ const (
 
 // Settings are how a frame is rendered and written.
 type Settings struct {
-	Width, Height int // pixels, [1, 16384]
-	Samples       int // camera rays a pixel, [1, 65536]
-	LightSamples  int // shadow rays a camera ray and area light, [1, 1024]
+	Width, Height int     // pixels, [1, 16384]
+	Samples       int     // camera rays a pixel, [1, 65536]; the most, where Noise is given
+	Noise         float64 // a pixel takes no more rays when its standard error is below this, in CIE L*; [0.01, 50], or 0: all take Samples
+	LightSamples  int     // shadow rays a camera ray and area light, [1, 1024]
 	Seed          uint32
 	Filter        Filter
 	Exposure      float64 // stops; every light value is multiplied by 2^Exposure
@@ -154,8 +155,10 @@ const (
 	PassSpecular
 	PassAmbient
 	PassEmission
-	PassDepth  // metres from the camera along the view axis, mean over the covered part; 0 where nothing is
-	PassNormal // world space, unit, mean over the covered part; 0 where nothing is
+	PassDepth   // metres from the camera along the view axis, mean over the covered part; 0 where nothing is
+	PassNormal  // world space, unit, mean over the covered part; 0 where nothing is
+	PassSamples // camera rays that the pixel took
+	PassNoise   // estimated standard error of the pixel, in CIE L* at the frame's exposure
 )
 
 // Format is a kind of picture file.

@@ -20,6 +20,7 @@ func (v Value) String() string {
 func (p Pass) String() string {
 	names := [...]string{
 		PassDiffuse: "diffuse", PassSpecular: "specular", PassAmbient: "ambient", PassEmission: "emission", PassDepth: "depth", PassNormal: "normal",
+		PassSamples: "samples", PassNoise: "noise",
 	}
 	if int(p) < len(names) {
 		return names[p]

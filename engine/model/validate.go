@@ -173,6 +173,8 @@ func (s Settings) validate() error {
 		return fmt.Errorf("samples must be 1 to %d, got %d", MaxSamples, s.Samples)
 	case s.LightSamples < 1 || s.LightSamples > MaxLightSamples:
 		return fmt.Errorf("light_samples must be 1 to %d, got %d", MaxLightSamples, s.LightSamples)
+	case s.Noise != 0 && !(s.Noise >= 0.01 && s.Noise <= 50):
+		return fmt.Errorf("noise must be 0.01 to 50 L*, or 0 for none, got %v", s.Noise)
 	case !finite(s.Exposure) || math.Abs(s.Exposure) > 100:
 		return fmt.Errorf("exposure must be -100 to 100 stops, got %v", s.Exposure)
 	case s.Tone > ToneACES:
@@ -186,7 +188,7 @@ func (s Settings) validate() error {
 	}
 	seenPass := map[Pass]bool{}
 	for _, p := range s.Passes {
-		if p > PassNormal || seenPass[p] {
+		if p > PassNoise || seenPass[p] {
 			return fmt.Errorf("pass %d is not known or named twice", p)
 		}
 		seenPass[p] = true

@@ -49,8 +49,10 @@ type worker struct {
 	shots   []geom.Ray
 	blocked []bool
 	probes  []bvh.Hit
-	sums    pixelSums
-	stats   Stats // rays cast so far
+	sums    *pixelSums // of the pixel at hand
+	block   []pixelSums
+	errors  []adaptive // by look
+	stats   Stats      // rays cast so far
 }
 
 // shadowRay is the light that a shadow ray carries if nothing stops it.
@@ -106,15 +108,14 @@ func (s *pixelSums) local(c *cast, surface int32) int32 {
 	return int32(k)
 }
 
-// castPixel casts every ray of pixel (x, y) and leaves what they found in w.sums.
-func (c *cast) castPixel(w *worker, x, y int) {
+// castPixel casts the rays of pixel (x, y) from sample first to before sample end, and adds what they find to sums.
+func (c *cast) castPixel(w *worker, sums *pixelSums, x, y, first, end int) {
 	s := &c.settings
 	key := sample.PixelKey(s.Seed, x, y)
-	w.sums.reset(len(c.globes))
-	batch := min(s.Samples, maxCameraBatch, max(1, maxShadowBatch/s.LightSamples))
-	for first := 0; first < s.Samples; first += batch {
-		n := min(batch, s.Samples-first)
-		c.castCamera(w, key, x, y, uint32(first), n)
+	w.sums = sums
+	batch := min(maxCameraBatch, max(1, maxShadowBatch/s.LightSamples))
+	for ; first < end; first += batch {
+		c.castCamera(w, key, x, y, uint32(first), min(batch, end-first))
 		if len(w.points) == 0 {
 			continue
 		}

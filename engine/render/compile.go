@@ -28,6 +28,7 @@ type cast struct {
 	looks    []look
 
 	translucent bool // some surface lets rays through
+	adapts      bool // some look asks how noisy it is
 	wantDepth   bool
 	wantNormal  bool
 }
@@ -67,6 +68,8 @@ type look struct {
 	emission tint.RGB      // what Ce is multiplied by
 	exposure float32       // 2^stops
 	globes   []tint.RGB    // radiance of the cast's globes, nit
+
+	wantNoise bool // for its pass
 }
 
 // surfaceLook is a surface's material in a look.
@@ -188,10 +191,10 @@ func (c *cast) addLook(p *model.Plan, i int) {
 	if !ownEmission.Black() {
 		lk.emission = ownEmission
 	}
-	for _, pass := range f.Settings.Passes {
-		c.wantDepth = c.wantDepth || pass == model.PassDepth
-		c.wantNormal = c.wantNormal || pass == model.PassNormal
-	}
+	c.wantDepth = c.wantDepth || wants(f.Settings, model.PassDepth)
+	c.wantNormal = c.wantNormal || wants(f.Settings, model.PassNormal)
+	lk.wantNoise = wants(f.Settings, model.PassNoise)
+	c.adapts = c.adapts || lk.wantNoise || f.Settings.Noise > 0
 	c.looks = append(c.looks, lk)
 }
 

@@ -118,12 +118,9 @@ func (c *cast) render(ctx context.Context, o Options) ([]*film, Stats, error) {
 	err := eachTile(ctx, threads, tiles, func(n int, t tile) {
 		w := &workers[n]
 		before := w.stats
-		for y := t.y0; y < t.y1; y++ {
-			for x := t.x0; x < t.x1; x++ {
-				c.castPixel(w, x, y)
-				for k, f := range films {
-					f.expose(c, &c.looks[k], &w.sums, y*c.settings.Width+x)
-				}
+		for y := t.y0; y < t.y1; y += blockSide {
+			for x := t.x0; x < t.x1; x += blockSide {
+				c.drawBlock(w, films, tile{x, y, min(x+blockSide, t.x1), min(y+blockSide, t.y1)})
 			}
 		}
 		if o.Progress != nil {

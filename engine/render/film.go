@@ -16,6 +16,8 @@ type film struct {
 	parts           [4]*[3][]float32 // diffuse, specular, ambient, emission, where asked for
 	depth           []float32
 	normal          [3][]float32
+	samples         []float32
+	noise           []float32
 }
 
 // partNames are the component passes' layer names, in the order of film.parts.
@@ -39,6 +41,10 @@ func newFilm(s model.Settings) *film {
 			f.depth = f.linear.Add("depth.Z")
 		case model.PassNormal:
 			f.normal = [3][]float32{f.linear.Add("normal.X"), f.linear.Add("normal.Y"), f.linear.Add("normal.Z")}
+		case model.PassSamples:
+			f.samples = f.linear.Add("samples.N")
+		case model.PassNoise:
+			f.noise = f.linear.Add("noise.L")
 		}
 	}
 	return f
@@ -83,9 +89,9 @@ func (lk *look) shade(c *cast, s *pixelSums, perSample float64) (parts [4]light)
 	return parts
 }
 
-// expose writes pixel i of a look from the pixel's sums, and develops it.
-func (f *film) expose(c *cast, lk *look, s *pixelSums, i int) {
-	perSample := 1 / float64(c.settings.Samples)
+// expose writes pixel i of a look from the sums of so many samples, and develops it.
+func (f *film) expose(c *cast, lk *look, s *pixelSums, samples, i int) {
+	perSample := 1 / float64(samples)
 	alpha := float32(s.covered * perSample)
 	var rgb tint.RGB
 	if s.covered > 0 {
@@ -159,12 +165,14 @@ func tone(c tint.RGB, s model.Settings) tint.RGB {
 }
 
 // ShowPass returns a display image of one pass of a linear image: components developed like the picture, over black; normals as
-// half the vector plus a half; depth from white (nearest in this picture) to near black (farthest), without a transfer function.
-// Uncovered pixels keep alpha 0 where the background is transparent, and are the background's colour otherwise.
+// half the vector plus a half; depth from white (nearest in this picture) to near black (farthest), samples from black to white at
+// the most there may be, noise from black to white at 4 L*, all three without a transfer function. Uncovered pixels keep alpha 0 where the background is transparent, and are the background's colour otherwise.
 func ShowPass(linear *pixmap.Image, pass model.Pass, s model.Settings) (*pixmap.Image, error) {
 	planes := map[model.Pass][]string{
-		model.PassDepth:  {"depth.Z", "depth.Z", "depth.Z"},
-		model.PassNormal: {"normal.X", "normal.Y", "normal.Z"},
+		model.PassDepth:   {"depth.Z", "depth.Z", "depth.Z"},
+		model.PassNormal:  {"normal.X", "normal.Y", "normal.Z"},
+		model.PassSamples: {"samples.N", "samples.N", "samples.N"},
+		model.PassNoise:   {"noise.L", "noise.L", "noise.L"},
 	}[pass]
 	if int(pass) < len(partNames) {
 		n := partNames[pass]
@@ -184,27 +192,38 @@ func ShowPass(linear *pixmap.Image, pass model.Pass, s model.Settings) (*pixmap.
 	for i := range cover {
 		value := tint.RGB{R: in[0][i], G: in[1][i], B: in[2][i]}
 		alpha := cover[i]
-		switch {
-		case pass == model.PassDepth || pass == model.PassNormal:
-			if pass == model.PassDepth {
-				value = tint.Grey(0.95)
-				if far > near {
-					value = tint.Grey(0.95 - 0.9*(in[0][i]-near)/(far-near))
-				}
-			} else {
-				value = tint.RGB{R: 0.5 + value.R/2, G: 0.5 + value.G/2, B: 0.5 + value.B/2}
+		switch pass {
+		case model.PassDepth:
+			value = tint.Grey(0.95)
+			if far > near {
+				value = tint.Grey(0.95 - 0.9*(in[0][i]-near)/(far-near))
 			}
-			if !s.Background.Transparent {
-				under := s.Background.Color
-				back := tint.RGB{R: encode(under.R), G: encode(under.G), B: encode(under.B)}
-				value, alpha = value.Scale(alpha).Add(back.Scale(1-alpha)), 1
-			}
+			value, alpha = layOver(value, alpha, s)
+		case model.PassNormal:
+			value, alpha = layOver(tint.RGB{R: 0.5 + value.R/2, G: 0.5 + value.G/2, B: 0.5 + value.B/2}, alpha, s)
+		case model.PassSamples:
+			value, alpha = tint.Grey(min(value.R/float32(s.Samples), 1)), 1
+		case model.PassNoise:
+			value, alpha = tint.Grey(min(value.R/mostNoise, 1)), 1
 		default:
 			value, alpha = Develop(value, alpha, s)
 		}
 		r[i], g[i], b[i], a[i] = value.R, value.G, value.B, alpha
 	}
 	return out, nil
+}
+
+// mostNoise is the error, in L*, that the noise pass shows as white.
+const mostNoise = 4
+
+// layOver lays an encoded value over the background, where there is one.
+func layOver(value tint.RGB, alpha float32, s model.Settings) (tint.RGB, float32) {
+	if s.Background.Transparent {
+		return value, alpha
+	}
+	under := s.Background.Color
+	back := tint.RGB{R: encode(under.R), G: encode(under.G), B: encode(under.B)}
+	return value.Scale(alpha).Add(back.Scale(1 - alpha)), 1
 }
 
 // depthRange returns the least and the largest value where anything covers the picture.
