@@ -64,7 +64,14 @@ func BenchmarkRayFiles(b *testing.B) {
 			built := time.Since(start)
 			fmt.Printf("build=%s threads=%d seconds=%.4f bytes_per_triangle=%.1f\n", kernel, threads, built.Seconds(), float64(tree.Bytes())/float64(len(m.triangles)))
 			s := NewScene([]Placement{{Tree: tree, WorldFromObject: geom.Identity(), Mask: SeenByCamera | CastsShadow}})
+			if wide {
+				useBundles = false
+			}
 			castFile(s, kernel, mode, threads, rays)
+			if wide {
+				useBundles = true
+				castFile(s, "bundle", mode, threads, rays)
+			}
 		}
 	}
 }

@@ -80,7 +80,7 @@ func NewScene(placements []Placement) *Scene {
 // Walker is the scratch space of one goroutine. The zero value works.
 type Walker struct {
 	pairs pairStack
-	wide  lanes
+	wide  wideScratch
 	moved []geom.Ray // rays in object space
 }
 

@@ -6,9 +6,9 @@ import (
 	"lampbook/engine/kernel/tri"
 )
 
-// bits orders floats >= +0 as integers. Of a negative one it gives a negative integer, which only ever loses as an entering distance
+// order orders floats >= +0 as integers. Of a negative one it gives a negative integer, which only ever loses as an entering distance
 // and only ever fails as a leaving one. Integer comparisons become conditional moves, float comparisons would be branches.
-func bits(f float32) int32 { return int32(math.Float32bits(f)) }
+func order(f float32) int32 { return int32(math.Float32bits(f)) }
 
 const stackSize = 64 // a binary tree is at most 64 levels deep, see maxDepth
 
@@ -30,7 +30,7 @@ func walkClosest(pairs []pair, tris []tri.Triangle, stack *pairStack, r *tri.Ray
 	if iz < 0 {
 		sz = 5
 	}
-	tMin, tMax := bits(r.TMin), bits(best.T)
+	tMin, tMax := order(r.TMin), order(best.T)
 	top := uint(0)
 	at := uint32(0)
 	for {
@@ -38,10 +38,10 @@ func walkClosest(pairs []pair, tris []tri.Triangle, stack *pairStack, r *tri.Ray
 			p := &pairs[at]
 			lx, ly, lz := &p[sx&7], &p[sy&7], &p[sz&7]
 			hx, hy, hz := &p[(sx^1)&7], &p[(sy^1)&7], &p[(sz^1)&7]
-			enter0 := max(tMin, bits((lx[0]-nx)*ix), bits((ly[0]-ny)*iy), bits((lz[0]-nz)*iz))
-			leave0 := min(tMax, bits((hx[0]-fx)*ix), bits((hy[0]-fy)*iy), bits((hz[0]-fz)*iz))
-			enter1 := max(tMin, bits((lx[1]-nx)*ix), bits((ly[1]-ny)*iy), bits((lz[1]-nz)*iz))
-			leave1 := min(tMax, bits((hx[1]-fx)*ix), bits((hy[1]-fy)*iy), bits((hz[1]-fz)*iz))
+			enter0 := max(tMin, order((lx[0]-nx)*ix), order((ly[0]-ny)*iy), order((lz[0]-nz)*iz))
+			leave0 := min(tMax, order((hx[0]-fx)*ix), order((hy[0]-fy)*iy), order((hz[0]-fz)*iz))
+			enter1 := max(tMin, order((lx[1]-nx)*ix), order((ly[1]-ny)*iy), order((lz[1]-nz)*iz))
+			leave1 := min(tMax, order((hx[1]-fx)*ix), order((hy[1]-fy)*iy), order((hz[1]-fz)*iz))
 			c0, c1 := math.Float32bits(p[6][0]), math.Float32bits(p[6][1])
 			if enter0 <= leave0 {
 				at = c0
@@ -60,7 +60,7 @@ func walkClosest(pairs []pair, tris []tri.Triangle, stack *pairStack, r *tri.Ray
 			}
 		}
 		tri.Closest(r, tris[at&^leafBit>>3:][:at&7+1], best)
-		tMax = bits(best.T)
+		tMax = order(best.T)
 	pop:
 		for {
 			if top == 0 {
@@ -91,7 +91,7 @@ func walkOccluded(pairs []pair, tris []tri.Triangle, stack *pairStack, r *tri.Ra
 	if iz < 0 {
 		sz = 5
 	}
-	tMin, tMax := bits(r.TMin), bits(r.TMax)
+	tMin, tMax := order(r.TMin), order(r.TMax)
 	top := uint(0)
 	at := uint32(0)
 	for {
@@ -99,10 +99,10 @@ func walkOccluded(pairs []pair, tris []tri.Triangle, stack *pairStack, r *tri.Ra
 			p := &pairs[at]
 			lx, ly, lz := &p[sx&7], &p[sy&7], &p[sz&7]
 			hx, hy, hz := &p[(sx^1)&7], &p[(sy^1)&7], &p[(sz^1)&7]
-			enter0 := max(tMin, bits((lx[0]-nx)*ix), bits((ly[0]-ny)*iy), bits((lz[0]-nz)*iz))
-			leave0 := min(tMax, bits((hx[0]-fx)*ix), bits((hy[0]-fy)*iy), bits((hz[0]-fz)*iz))
-			enter1 := max(tMin, bits((lx[1]-nx)*ix), bits((ly[1]-ny)*iy), bits((lz[1]-nz)*iz))
-			leave1 := min(tMax, bits((hx[1]-fx)*ix), bits((hy[1]-fy)*iy), bits((hz[1]-fz)*iz))
+			enter0 := max(tMin, order((lx[0]-nx)*ix), order((ly[0]-ny)*iy), order((lz[0]-nz)*iz))
+			leave0 := min(tMax, order((hx[0]-fx)*ix), order((hy[0]-fy)*iy), order((hz[0]-fz)*iz))
+			enter1 := max(tMin, order((lx[1]-nx)*ix), order((ly[1]-ny)*iy), order((lz[1]-nz)*iz))
+			leave1 := min(tMax, order((hx[1]-fx)*ix), order((hy[1]-fy)*iy), order((hz[1]-fz)*iz))
 			c0, c1 := math.Float32bits(p[6][0]), math.Float32bits(p[6][1])
 			if enter0 <= leave0 {
 				at = c0

@@ -21,6 +21,13 @@ type wideHead struct {
 	blocks unsafe.Pointer
 }
 
+// wideScratch is what a walker needs for wide trees.
+type wideScratch struct {
+	lanes    lanes
+	entrance wideNode
+	shaft    shaft
+}
+
 // lanes is the scratch space of the walks in assembly, which know its layout by the L_ offsets.
 type lanes struct {
 	near, far, negInv, org, slope [4]float32
@@ -45,16 +52,39 @@ func (t *wideTree) head(bounds geom.Box) wideHead {
 	}
 }
 
+// enter returns the node from which rays start, nil if none of them hits anything.
+func (t *wideTree) enter(w *Walker, rays []geom.Ray) unsafe.Pointer {
+	if len(rays) >= leastBundle && useBundles {
+		switch w.wide.shaft.enclose(rays, t.bounds) {
+		case outside:
+			return nil
+		case enclosed:
+			if !t.entrance(&w.wide.entrance, &w.wide.shaft) {
+				return nil
+			}
+			return unsafe.Pointer(&w.wide.entrance)
+		}
+	}
+	return unsafe.Pointer(&t.nodes[0])
+}
+
+// useBundles says that rays which run together start together. Tests switch it off to compare.
+var useBundles = true
+
 // closest improves hits with what rays meet in t.
 func (t *wideTree) closest(w *Walker, rays []geom.Ray, hits []Hit, placement uint32) {
-	h := t.head(t.bounds)
-	closestWide(&h, h.nodes, &rays[0], len(rays), &hits[0], placement, &w.wide)
+	if entry := t.enter(w, rays); entry != nil {
+		h := t.head(t.bounds)
+		closestWide(&h, entry, &rays[0], len(rays), &hits[0], placement, &w.wide.lanes)
+	}
 }
 
 // occluded sets blocked for rays that meet anything in t.
 func (t *wideTree) occluded(w *Walker, rays []geom.Ray, blocked []bool) {
-	h := t.head(t.bounds)
-	occludedWide(&h, h.nodes, &rays[0], len(rays), &blocked[0], &w.wide)
+	if entry := t.enter(w, rays); entry != nil {
+		h := t.head(t.bounds)
+		occludedWide(&h, entry, &rays[0], len(rays), &blocked[0], &w.wide.lanes)
+	}
 }
 
 // closestWide improves hits with what rays meet in t, starting at the node entry. Rays that can hit nothing are passed over.

@@ -7,8 +7,10 @@ import "lampbook/engine/kernel/geom"
 // haveWide is false: there is no vector walk for this machine, and Build makes no wide trees.
 const haveWide = false
 
-// lanes is empty here.
-type lanes struct{}
+// wideScratch is empty here.
+type wideScratch struct{}
+
+var useBundles = false
 
 func (t *wideTree) closest(*Walker, []geom.Ray, []Hit, uint32) {}
 
