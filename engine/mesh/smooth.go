@@ -18,21 +18,15 @@ type smoothing struct {
 // Positions count as one by their value, so a seam in the texture does not show. Time is linear in the number of triangles.
 func smooth(m *Mesh, how smoothing) {
 	parent := joinCorners(m, how)
-	sums := make([]geom.Vec3d, 3*len(m.Triangles)) // by root
-	for t := range m.Triangles {
-		n := faceNormal(m, t)
-		for k := range 3 {
-			root := find(parent, uint32(3*t+k))
-			sums[root] = sums[root].Add(n.Scale(cornerAngle(m, t, k)))
-		}
-	}
+	class, sums := sumNormals(m, parent)
 	var welded welder
-	out := Mesh{}
+	welded.reserve(len(sums))
+	out := Mesh{Positions: make([]geom.Vec3, 0, len(sums)), Normals: make([]geom.Vec3, 0, len(sums))}
 	for t := range m.Triangles {
 		for k, v := range m.Triangles[t] {
 			keep := how.given != nil && how.given[v]
-			root := find(parent, uint32(3*t+k))
-			key := [3]uint32{v, root + 1, 0}
+			c := class[3*t+k]
+			key := [3]uint32{v, c + 1, 0}
 			if keep {
 				key[1] = 0
 			}
@@ -48,7 +42,7 @@ func smooth(m *Mesh, how smoothing) {
 			n := geom.Vec3{Y: 1} // of a triangle without an area, which nothing can hit
 			if keep {
 				n = m.Normals[v]
-			} else if unit, ok := unitNormal(sums[root].X, sums[root].Y, sums[root].Z); ok {
+			} else if unit, ok := unitNormal(sums[c].X, sums[c].Y, sums[c].Z); ok {
 				n = unit
 			}
 			out.Normals = append(out.Normals, n)
@@ -57,9 +51,32 @@ func smooth(m *Mesh, how smoothing) {
 	m.Positions, m.Normals, m.UVs = out.Positions, out.Normals, out.UVs
 }
 
+// sumNormals numbers the sets of the forest in the order of their first corners and sums the normals of each. class holds each
+// corner's set; it is parent, written over.
+func sumNormals(m *Mesh, parent []uint32) (class []uint32, sums []geom.Vec3d) {
+	for c := range parent { // from the first corner on, so that every parent, which is lower, is a root by then
+		parent[c] = parent[parent[c]]
+	}
+	for t := range m.Triangles {
+		n := faceNormal(m, t)
+		for k := range 3 {
+			c := uint32(3*t + k)
+			if root := parent[c]; root == c {
+				parent[c] = uint32(len(sums))
+				sums = append(sums, geom.Vec3d{})
+			} else {
+				parent[c] = parent[root] // the root's number by now
+			}
+			sums[parent[c]] = sums[parent[c]].Add(n.Scale(cornerAngle(m, t, k)))
+		}
+	}
+	return parent, sums
+}
+
 // joinCorners returns a union-find forest over the corners (3·triangle + corner): one tree for each set that shares a normal.
 func joinCorners(m *Mesh, how smoothing) []uint32 {
 	var places, edges welder
+	places.reserve(len(m.Positions))
 	place := make([]uint32, len(m.Positions))
 	for v, p := range m.Positions {
 		place[v], _ = places.id(positionKey(p))
@@ -75,7 +92,8 @@ func joinCorners(m *Mesh, how smoothing) []uint32 {
 	} else {
 		cosLimit = -2
 	}
-	var last []uint32 // by edge: the corner that begins it in the triangle that had it last
+	edges.reserve(3 * len(m.Triangles) / 2)
+	last := make([]uint32, 0, 3*len(m.Triangles)/2) // by edge: the corner that begins it in the triangle that had it last
 	for t, tri := range m.Triangles {
 		for k := range 3 {
 			next := (k + 1) % 3

@@ -2,6 +2,7 @@ package mesh
 
 import (
 	"math"
+	"slices"
 
 	"lampbook/engine/kernel/geom"
 )
@@ -32,9 +33,22 @@ func (w *welder) id(key [3]uint32) (id uint32, fresh bool) {
 	}
 }
 
+// reserve makes room for n keys, so that the table need not grow to hold them.
+func (w *welder) reserve(n int) {
+	w.keys = slices.Grow(w.keys, n)
+	for size := 1024; ; size *= 2 {
+		if size > 2*n {
+			w.resize(size)
+			return
+		}
+	}
+}
+
 // grow doubles the table.
-func (w *welder) grow() {
-	w.table = make([]uint32, max(1024, 2*len(w.table)))
+func (w *welder) grow() { w.resize(max(1024, 2*len(w.table))) }
+
+func (w *welder) resize(size int) {
+	w.table = make([]uint32, size)
 	mask := uint32(len(w.table) - 1)
 	for i, key := range w.keys {
 		at := hash3(key) & mask
