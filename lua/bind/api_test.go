@@ -240,7 +240,7 @@ func TestAPIExamples(t *testing.T) {
 		env := newEnv()
 		env.Files = workshop.with("products.csv", "article,height\n12,0.5\n")
 		l := newState(t, env)
-		if err := run(t, env, l, stage); err != nil {
+		if err := run(t, l, stage); err != nil {
 			t.Fatal(message(err))
 		}
 		source := e.example
@@ -250,7 +250,7 @@ func TestAPIExamples(t *testing.T) {
 		if !strings.Contains(source, e.name[strings.LastIndexAny(e.name, ".:")+1:]) {
 			t.Errorf("%s: the example of %s does not call it: %s", e.file, name, e.example)
 		}
-		if err := run(t, env, l, source); err != nil {
+		if err := run(t, l, source); err != nil {
 			t.Errorf("%s: the example of %s: %s", e.file, name, message(err))
 		}
 	}

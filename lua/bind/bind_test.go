@@ -61,7 +61,7 @@ func newState(t testing.TB, e *Env) *lua.LState {
 }
 
 // run runs a scene under an Env.
-func run(t testing.TB, e *Env, l *lua.LState, source string) error {
+func run(t testing.TB, l *lua.LState, source string) error {
 	t.Helper()
 	fn, err := l.Load(strings.NewReader(source), "scenes/test.lua")
 	if err != nil {
@@ -74,7 +74,7 @@ func run(t testing.TB, e *Env, l *lua.LState, source string) error {
 // plan runs a scene to its end.
 func plan(t testing.TB, e *Env, source string) (*model.Plan, error) {
 	t.Helper()
-	if err := run(t, e, newState(t, e), source); err != nil {
+	if err := run(t, newState(t, e), source); err != nil {
 		return nil, err
 	}
 	return e.Finish()
@@ -108,7 +108,7 @@ func valueIn[T value](t testing.TB, source string) T {
 	t.Helper()
 	e := newEnv()
 	l := newState(t, e)
-	if err := run(t, e, l, "return "+source); err != nil {
+	if err := run(t, l, "return "+source); err != nil {
 		t.Fatalf("%s: %v", source, message(err))
 	}
 	v, ok := valueOf[T](l.Get(-1))

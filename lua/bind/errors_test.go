@@ -117,7 +117,7 @@ const ball = `local ball = place{ mesh = mesh.sphere{ radius = 0.05, segments = 
 func TestErrors(t *testing.T) {
 	for _, c := range errorTests {
 		e := newEnv()
-		err := run(t, e, newState(t, e), c.scene)
+		err := run(t, newState(t, e), c.scene)
 		line := "scenes/test.lua:1: "
 		if c.want[:5] == "param" && c.scene[:9] == "param('x'" {
 			line = "scenes/test.lua:2: "

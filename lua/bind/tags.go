@@ -119,6 +119,9 @@ func nameOfTags(tags []model.Tag) string {
 		parts = append(parts, fileLetters(t.Key)+"-"+fileLetters(value))
 	}
 	name := strings.Join(parts, "_")
+	if name[0] == '.' {
+		name = "-" + name // a file that begins with '.' is hidden
+	}
 	if len(name) > model.MaxNameLength {
 		sum := sha256.Sum256([]byte(name))
 		name = fmt.Sprintf("%s-%x", name[:model.MaxNameLength-9], sum[:4])
@@ -147,10 +150,7 @@ func fileLetters(s string) string {
 			b.WriteByte('-')
 		}
 	}
-	if name := b.String(); name != "" && name[0] != '.' {
-		return name
-	}
-	return "-" + b.String()
+	return b.String()
 }
 
 func fileLetter(r rune) bool {
