@@ -143,11 +143,12 @@ func sphereIrradiance(d, n geom.Vec3d, r float64) float64 {
 	if float64(cos*h) >= 1 {
 		return math.Pi * cos / (h * h)
 	}
-	// The horizon cuts the sphere.
+	// The horizon cuts the sphere. π/2 - asin of the catalogue's form is taken as one angle: the difference would lose
+	// all digits of a distant sphere.
 	sin := math.Sqrt((1 - cos) * (1 + cos))
 	s := math.Sqrt((h - 1) * (h + 1))
-	gap := num.AsinWide(min(1, s/(h*sin)))
+	root := math.Sqrt(max(0, 1-float64(float64(h*h)*float64(cos*cos))))
+	gap := num.Atan2Wide(root, s)
 	arc := num.AcosWide(min(1, max(-1, -s*cos/sin)))
-	segment := float64(cos*arc) - float64(s*math.Sqrt(max(0, 1-float64(float64(h*h)*float64(cos*cos)))))
-	return max(0, math.Pi/2-gap+segment/(h*h))
+	return max(0, gap+(float64(cos*arc)-float64(s*root))/(h*h))
 }

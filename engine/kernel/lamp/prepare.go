@@ -179,12 +179,17 @@ func (l *Lamp) prepareDisk(p geom.Vec3d, q *Prepared) {
 	near, far := rho-l.Radius, rho+l.Radius
 	h2 := float64(h * h)
 	l1, l2 := math.Sqrt(float64(near*near)+h2), math.Sqrt(float64(far*far)+h2)
-	zx, zy := near/l1+far/l2, h/l1+h/l2
-	n := math.Sqrt(float64(zx*zx) + float64(zy*zy))
-	if !(n > 0) || !(zy > 0) {
+	// The slope of the bisector, zx/zy. Under the disk the numerator near·l2 + far·l1 is a difference of nearly equal
+	// terms, and the third binomial formula gives it without loss.
+	slope := (float64(near*l2) + float64(far*l1)) / float64(h*(l1+l2))
+	if near < 0 {
+		slope = 4 * rho * l.Radius * h / ((l1 + l2) * (float64(far*l1) - float64(near*l2)))
+	}
+	zy := 1 / math.Sqrt(1+float64(slope*slope))
+	zx := slope * zy
+	if !(zy > 0) {
 		return
 	}
-	zx, zy = zx/n, zy/n
 	// The cotangent of half the angle between the rim points, from its sine 2Rh/l1l2 and cosine dot/l1l2.
 	sine, dot := 2*float64(l.Radius*h), float64(near*far)+h2
 	cot := (float64(l1*l2) + dot) / sine

@@ -71,7 +71,7 @@ func (c *ellipticCone) disk(u, v float32) (wi geom.Vec3, dist, weight float32) {
 	if x == 0 && y == 0 {
 		x = 1e-12 // a radius of no length has no direction
 	}
-	r2 := float64(x*x) + float64(y*y)
+	r2 := min(1, float64(x*x)+float64(y*y)) // rounding must not pass the rim
 	ex, ey := c.a*x, c.b*y
 	ex2, ey2 := float64(ex*ex), float64(ey*ey)
 	rho2 := ex2 + ey2
@@ -91,8 +91,8 @@ func (c *ellipticCone) disk(u, v float32) (wi geom.Vec3, dist, weight float32) {
 // sphere gives the distance.
 func (c *ellipticCone) sphere(u, v, weight float32) (wi geom.Vec3, dist, w float32) {
 	x, y := sample.DiskWide(u, v)
-	h := float64(c.versine * (float64(x*x) + float64(y*y))) // 1 - cos θ
-	k2 := float64(c.versine * (2 - h))                      // (sin θ over the disc's radius)²
+	h := float64(c.versine * min(1, float64(x*x)+float64(y*y))) // 1 - cos θ
+	k2 := float64(c.versine * (2 - h))                          // (sin θ over the disc's radius)²
 	k := math.Sqrt(k2)
 	dir := c.pole.Scale(1 - h).Add(c.s.Scale(x * k)).Add(c.t.Scale(y * k))
 	across2 := float64(float64(c.far*c.far) * float64(h*(2-h))) // squared distance of the centre from the ray
