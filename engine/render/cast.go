@@ -111,28 +111,28 @@ func (s *pixelSums) local(c *cast, surface int32) int32 {
 // castPixel casts the rays of pixel (x, y) from sample first to before sample end, and adds what they find to sums.
 func (c *cast) castPixel(w *worker, sums *pixelSums, x, y, first, end int) {
 	s := &c.settings
-	key := sample.PixelKey(s.Seed, x, y)
+	px := sample.PixelAt(s.Seed, x, y)
 	w.sums = sums
 	batch := min(maxCameraBatch, max(1, maxShadowBatch/s.LightSamples))
 	for ; first < end; first += batch {
-		c.castCamera(w, key, x, y, uint32(first), min(batch, end-first))
+		c.castCamera(w, px, x, y, uint32(first), min(batch, end-first))
 		if len(w.points) == 0 {
 			continue
 		}
 		for l := range c.lights {
-			c.castLight(w, key, l)
+			c.castLight(w, px, l)
 		}
 	}
 }
 
 // castCamera casts n camera rays from sample first on and fills w.points.
-func (c *cast) castCamera(w *worker, key sample.Key, x, y int, first uint32, n int) {
+func (c *cast) castCamera(w *worker, px sample.Pixel, x, y int, first uint32, n int) {
 	w.first, w.batch = first, n
 	w.uv = grow(w.uv, n)
-	key.For(purposeFilter).Points(first, w.uv)
+	px.For(purposeFilter, c.settings.Samples).Points(first, w.uv)
 	w.lens = grow(w.lens, n)
 	if c.camera.lensX != (geom.Vec3{}) {
-		key.For(purposeLens).Points(first, w.lens)
+		px.For(purposeLens, c.settings.Samples).Points(first, w.lens)
 	}
 	w.rays, w.hits = grow(w.rays, n), grow(w.hits, n)
 	for i := range n {
@@ -141,7 +141,7 @@ func (c *cast) castCamera(w *worker, key sample.Key, x, y int, first uint32, n i
 	}
 	w.stats.CameraRays += int64(n)
 	if c.translucent {
-		c.closestOpaque(w, bvh.SeenByCamera, w.rays, w.hits, key.For(purposeOpacity), func(i int) uint32 { return first + uint32(i) })
+		c.closestOpaque(w, bvh.SeenByCamera, w.rays, w.hits, px.For(purposeOpacity, c.settings.Samples), func(i int) uint32 { return first + uint32(i) })
 	} else {
 		c.scene.Closest(&w.walker, bvh.SeenByCamera, w.rays, w.hits)
 	}
@@ -177,14 +177,14 @@ func (c *cast) castCamera(w *worker, key sample.Key, x, y int, first uint32, n i
 }
 
 // castLight casts the shadow rays from w.points to light l and adds what arrives to the sums.
-func (c *cast) castLight(w *worker, key sample.Key, l int) {
-	c.aimShadows(w, key, l)
+func (c *cast) castLight(w *worker, px sample.Pixel, l int) {
+	c.aimShadows(w, px, l)
 	blocked := w.blocked[:0]
 	if c.lights[l].shadow {
 		w.stats.ShadowRays += int64(len(w.shots))
 		w.blocked = grow(w.blocked, len(w.shots))
 		blocked = w.blocked
-		c.occluded(w, key, l, blocked)
+		c.occluded(w, px, l, blocked)
 	}
 	for i := range w.shadows {
 		if len(blocked) > 0 && blocked[i] {
@@ -207,13 +207,13 @@ func (c *cast) castLight(w *worker, key sample.Key, l int) {
 
 // closestOpaque is Closest for casts with see-through surfaces: each surface stops its share of rays, chosen by a
 // number of the ray's own. sampleOf gives the sample point of ray i.
-func (c *cast) closestOpaque(w *worker, mask bvh.Mask, rays []geom.Ray, hits []bvh.Hit, key sample.Key, sampleOf func(i int) uint32) {
+func (c *cast) closestOpaque(w *worker, mask bvh.Mask, rays []geom.Ray, hits []bvh.Hit, stream sample.Stream, sampleOf func(i int) uint32) {
 	c.scene.Closest(&w.walker, mask, rays, hits)
 	for i := range hits {
 		ray := rays[i]
 		for layer := uint32(1); hits[i].Placement != bvh.NoHit && layer <= maxLayers; layer++ {
 			opacity := c.surfaces[c.surfaceOf(&hits[i])].opacity
-			if opacity >= 1 || key.For(layer).Float(sampleOf(i)) < opacity {
+			if opacity >= 1 || stream.Layer(layer).Float(sampleOf(i)) < opacity {
 				break
 			}
 			ray.TMin = hits[i].T

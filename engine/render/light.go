@@ -26,9 +26,9 @@ const beforeLight = 1 - 1.0/(1<<14)
 
 // aimShadows fills w.shadows and w.shots with the rays from w.points to light l, and adds the light's ambient share to the sums.
 // A point that faces away from a sample of the light needs no ray.
-func (c *cast) aimShadows(w *worker, key sample.Key, l int) {
+func (c *cast) aimShadows(w *worker, px sample.Pixel, l int) {
 	cl := &c.lights[l]
-	stream := key.For(cl.purpose)
+	stream := px.For(cl.purpose, c.settings.Samples*cl.rays)
 	w.shadows, w.shots = w.shadows[:0], w.shots[:0]
 	share := 1 / float32(cl.rays)
 	var q lamp.Prepared
@@ -65,13 +65,13 @@ func (c *cast) aimShadows(w *worker, key sample.Key, l int) {
 }
 
 // occluded tells which of w.shots are stopped on their way to light l.
-func (c *cast) occluded(w *worker, key sample.Key, l int, blocked []bool) {
+func (c *cast) occluded(w *worker, px sample.Pixel, l int, blocked []bool) {
 	if !c.translucent {
 		c.scene.Occluded(&w.walker, bvh.CastsShadow, w.shots, blocked)
 		return
 	}
 	w.probes = grow(w.probes, len(w.shots))
-	c.closestOpaque(w, bvh.CastsShadow, w.shots, w.probes, key.For(c.lights[l].purpose).For(purposeOpacity), func(i int) uint32 { return w.shadows[i].number })
+	c.closestOpaque(w, bvh.CastsShadow, w.shots, w.probes, px.For(c.lights[l].purpose, c.settings.Samples*c.lights[l].rays).Layer(purposeOpacity), func(i int) uint32 { return w.shadows[i].number })
 	for i := range blocked {
 		blocked[i] = w.probes[i].Placement != bvh.NoHit
 	}
