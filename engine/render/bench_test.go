@@ -3,10 +3,15 @@ package render
 import (
 	"context"
 	"fmt"
+	"slices"
 	"testing"
 	"time"
 
+	"lampbook/engine/kernel/bvh"
+	"lampbook/engine/kernel/geom"
+	"lampbook/engine/kernel/sample"
 	"lampbook/engine/kernel/tint"
+	"lampbook/engine/mesh"
 	"lampbook/engine/model"
 )
 
@@ -67,4 +72,72 @@ func BenchmarkSheet(b *testing.B) {
 			b.ReportMetric(tile.Seconds()/float64(b.N), "s/tile")
 		})
 	}
+}
+
+// tape holds a cast's rays as they were cast, batch by batch.
+type tape struct {
+	camera, shadow [][]geom.Ray
+}
+
+// record casts frame i of a plan pixel by pixel and keeps its rays.
+func record(b *testing.B, e *Engine, plan *model.Plan, i int) (*cast, *tape) {
+	b.Helper()
+	c, err := compile(Cast{Plan: plan, Frames: []int{i}}, func(id model.MeshID) (*mesh.Mesh, *bvh.Tree, error) { return e.build(plan.Meshes[id]) })
+	if err != nil {
+		b.Fatal(err)
+	}
+	var rays tape
+	var w worker
+	var sums pixelSums
+	w.sums = &sums
+	s := c.settings
+	for _, t := range tilesOf(s.Width, s.Height) {
+		for y := t.y0; y < t.y1; y++ {
+			for x := t.x0; x < t.x1; x++ {
+				sums.reset(0)
+				px := sample.PixelAt(s.Seed, x, y)
+				c.castCamera(&w, px, x, y, 0, s.Samples)
+				rays.camera = append(rays.camera, slices.Clone(w.rays))
+				for l := range c.lights {
+					c.castLight(&w, px, l)
+					if len(w.shots) > 0 {
+						rays.shadow = append(rays.shadow, slices.Clone(w.shots))
+					}
+				}
+			}
+		}
+	}
+	return c, &rays
+}
+
+// BenchmarkFrame renders a small frame on one thread, and then casts the same rays again with nothing else to do. "x/rays" is the ratio of the
+// two times: what a frame costs beside its rays.
+func BenchmarkFrame(b *testing.B) {
+	b.Run("form/160x120x64spp", func(b *testing.B) {
+		var s studio
+		i := sheetPlan(&s, 1)[0]
+		s.plan.Frames[i].Settings.Width, s.plan.Frames[i].Settings.Height = 160, 120
+		e := s.engine(b)
+		c, rays := record(b, e, &s.plan, i)
+		var w bvh.Walker
+		hits, blocked := make([]bvh.Hit, 4096), make([]bool, 4096)
+		var frame, bare time.Duration
+		count := 0
+		for b.Loop() {
+			took, stats := castTime(b, e, &s.plan, []int{i})
+			frame += took
+			start := time.Now()
+			for _, batch := range rays.camera {
+				c.scene.Closest(&w, bvh.SeenByCamera, batch, hits[:len(batch)])
+			}
+			for _, batch := range rays.shadow {
+				c.scene.Occluded(&w, bvh.CastsShadow, batch, blocked[:len(batch)])
+			}
+			bare += time.Since(start)
+			count = int(stats.CameraRays + stats.ShadowRays)
+		}
+		b.ReportMetric(frame.Seconds()/bare.Seconds(), "x/rays")
+		b.ReportMetric(float64(b.N*count)/frame.Seconds()/1e6, "Mrays/s")
+		b.ReportMetric(float64(b.N*count)/bare.Seconds()/1e6, "bare-Mrays/s")
+	})
 }
