@@ -3,7 +3,7 @@
 // Walks of a wide tree, one ray after the other. See wide_amd64.go for the layouts and wide.go for the tree.
 //
 // Registers throughout a walk:
-//   R8 nodes   SI lanes   BX top of the stack   AX node, block or child
+//   R8 lanes   SI the ray made ready   BX top of the stack   AX node, block or child
 //   R10 R11 R12  rows of the planes that the ray meets first (x, y, z), R13 R14 R15 of the others, in bytes
 //   Y0 Y1 Y2 near origin   Y3 Y4 Y5 far origin   Y6 Y7 Y8 -1/direction   Y9 TMin   Y10 nearest hit so far
 //
@@ -12,35 +12,43 @@
 
 #include "textflag.h"
 
-#define L_NEAR 0
-#define L_FAR 16
-#define L_NINV 32
-#define L_ORG 48
-#define L_SLOPE 64
-#define L_KX 80
-#define L_KY 88
-#define L_KZ 96
-#define L_TMIN 104
-#define L_BEST 108
-#define L_TIE 112
-#define L_FOUND 116
-#define L_U 120
-#define L_V 124
-#define L_RUN 128
-#define L_ENTER 160
-#define L_T 192
-#define L_US 224
-#define L_VS 256
-#define L_AX 288
-#define L_AY 320
-#define L_BX 352
-#define L_BY 384
-#define L_CX 416
-#define L_CY 448
-#define L_EU 480
-#define L_EV 512
-#define L_EW 544
-#define L_STACK 576
+// wideRay
+#define R_NEAR 0
+#define R_FAR 16
+#define R_NINV 32
+#define R_ORG 48
+#define R_SLOPE 64
+#define R_KX 80
+#define R_KY 84
+#define R_KZ 88
+#define R_SIGNS 92
+#define R_TMIN 96
+#define R_TMAX 100
+#define R_SIZE 128
+
+// lanes
+#define L_ENTER 0
+#define L_T 32
+#define L_US 64
+#define L_VS 96
+#define L_AX 128
+#define L_AY 160
+#define L_BX 192
+#define L_BY 224
+#define L_CX 256
+#define L_CY 288
+#define L_EU 320
+#define L_EV 352
+#define L_EW 384
+#define L_NODES 416
+#define L_BLOCKS 424
+#define L_RUN 432
+#define L_BEST 440
+#define L_TIE 444
+#define L_U 448
+#define L_V 452
+#define L_FOUND 456
+#define L_STACK 512
 
 #define H_LO 0
 #define H_HI 16
@@ -65,125 +73,146 @@ GLOBL flattest<>(SB), RODATA|NOPTR, $4
 DATA smallest<>+0(SB)/4, $0x00800000 // 2^-126
 GLOBL smallest<>(SB), RODATA|NOPTR, $4
 
-// Prepares the ray at DI for the tree whose head is at DX as tri.Ray.Prepare does, or jumps to bad. Clobbers AX, CX, DX, R9 and X0 to
-// X15; leaves the rows in R10 to R15.
-#define PREPARE(bad) \
-	VMOVUPS (DI), X0 \
-	VMOVUPS 12(DI), X1 \
-	VXORPS X15, X15, X15 \
-	VMOVSS 24(DI), X2 \
-	VMOVSS 28(DI), X3 \
-	VMAXSS X2, X15, X2 \
-	VADDSS X15, X2, X2 \
-	VUCOMISS X2, X3 \
-	JLS bad \
-	VMOVSS X2, L_TMIN(SI) \
-	VBLENDPS $8, X15, X0, X0 \
-	VBLENDPS $8, X15, X1, X1 \
-	VMULPS X15, X0, X4 \
-	VMULPS X15, X1, X5 \
-	VADDPS X4, X5, X4 \
-	VCMPPS $3, X4, X4, X4 \
-	VMOVMSKPS X4, AX \
-	TESTL AX, AX \
-	JNZ bad \
-	VBROADCASTSS signBit<>(SB), X14 \
-	VANDNPS X1, X14, X4 \
-	VANDPS X1, X14, X5 \
-	VMOVD X4, AX \
-	VPEXTRD $1, X4, CX \
-	VPEXTRD $2, X4, R10 \
-	MOVL $4, R9 \
-	MOVL $8, R11 \
-	CMPL CX, R10 \
-	CMOVLCS R11, R9 \
-	CMOVLCS R10, CX \
-	MOVL $0, R11 \
-	CMPL AX, CX \
-	CMOVLCC R11, R9 \
-	CMOVLCC AX, CX \
-	TESTL CX, CX \
-	JZ bad \
-	MOVQ R9, L_KZ(SI) \
-	LEAL 4(R9), R10 \
-	CMPL R10, $12 \
-	CMOVLEQ R11, R10 \
-	MOVQ R10, L_KX(SI) \
-	ADDL $4, R10 \
-	CMPL R10, $12 \
-	CMOVLEQ R11, R10 \
-	MOVQ R10, L_KY(SI) \
-	VMOVUPS H_LO(DX), X6 \
-	VMOVUPS H_HI(DX), X7 \
-	VSUBPS X0, X6, X6 \
-	VSUBPS X0, X7, X7 \
-	VANDNPS X6, X14, X6 \
-	VANDNPS X7, X14, X7 \
-	VMAXPS X6, X7, X6 \
-	VANDNPS X0, X14, X7 \
-	VMOVHLPS X6, X6, X8 \
-	VMOVHLPS X7, X7, X9 \
-	VMAXPS X6, X8, X6 \
-	VMAXPS X7, X9, X7 \
-	VMOVSHDUP X6, X8 \
-	VMOVSHDUP X7, X9 \
-	VMAXSS X6, X8, X6 \
-	VMAXSS X7, X9, X7 \
-	VMULSS marginReach<>(SB), X6, X6 \
-	VMULSS marginOrigin<>(SB), X7, X7 \
-	VADDSS X6, X7, X6 \
-	VBROADCASTSS X6, X6 \
-	VORPS X5, X6, X6 \
-	VADDPS X6, X0, X7 \
-	VSUBPS X6, X0, X8 \
-	VMOVD CX, X9 \
-	VMULSS flattest<>(SB), X9, X9 \
-	VMAXSS smallest<>(SB), X9, X9 \
-	VBROADCASTSS X9, X9 \
-	VMAXPS X9, X4, X9 \
-	VORPS X5, X9, X9 \
-	VBROADCASTSS minusOne<>(SB), X10 \
-	VDIVPS X9, X10, X9 \
-	VMOVUPS X7, L_NEAR(SI) \
-	VMOVUPS X8, L_FAR(SI) \
-	VMOVUPS X9, L_NINV(SI) \
-	VMOVUPS X0, L_ORG(SI) \
-	VMOVUPS X1, L_SLOPE(SI) \
-	VBROADCASTSS L_SLOPE(SI)(R9*1), X11 \
-	VBLENDPS $8, X10, X1, X10 \
-	VDIVPS X11, X10, X10 \
-	VMOVUPS X10, L_SLOPE(SI) \
-	VMOVMSKPS X1, AX \
+// func prepareWide(t *wideHead, rays *geom.Ray, n int, out *wideRay)
+//
+// As tri.Ray.Prepare; signs is -1 for rays that can hit nothing. Many at a time, because one ray's divisions and shuffles
+// would hold up its own walk, but overlap with other rays'.
+TEXT ·prepareWide(SB), NOSPLIT, $0-32
+	MOVQ t+0(FP), DX
+	MOVQ rays+8(FP), DI
+	MOVQ n+16(FP), BX
+	MOVQ out+24(FP), SI
+	VXORPS X15, X15, X15
+	VBROADCASTSS signBit<>(SB), X14
+	VBROADCASTSS minusOne<>(SB), X13
+	VMOVUPS H_LO(DX), X12
+	VMOVUPS H_HI(DX), X11
+	XORL R11, R11
+
+ready:
+	MOVL $-1, R_SIGNS(SI)
+	VMOVUPS (DI), X0
+	VMOVUPS 12(DI), X1
+	VMOVSS 24(DI), X2
+	VMOVSS 28(DI), X3
+	VMAXSS X2, X15, X2 // a NaN stays
+	VADDSS X15, X2, X2 // -0 becomes +0
+	VUCOMISS X2, X3
+	JLS skip
+	VMOVSS X2, R_TMIN(SI)
+	VMOVSS X3, R_TMAX(SI)
+	VBLENDPS $8, X15, X0, X0
+	VBLENDPS $8, X15, X1, X1
+	VMULPS X15, X0, X4
+	VMULPS X15, X1, X5
+	VADDPS X4, X5, X4
+	VCMPPS $3, X4, X4, X4
+	VMOVMSKPS X4, AX
+	TESTL AX, AX
+	JNZ skip // not finite
+	VANDNPS X1, X14, X4 // |dir|
+	VANDPS X1, X14, X5 // its signs
+	VMOVD X4, AX
+	VPEXTRD $1, X4, CX
+	VPEXTRD $2, X4, R10
+	MOVL $4, R9
+	MOVL $8, R12
+	CMPL CX, R10
+	CMOVLCS R12, R9
+	CMOVLCS R10, CX
+	CMPL AX, CX
+	CMOVLCC R11, R9
+	CMOVLCC AX, CX
+	TESTL CX, CX
+	JZ skip // no direction
+	MOVL R9, R_KZ(SI)
+	LEAL 4(R9), R10
+	CMPL R10, $12
+	CMOVLEQ R11, R10
+	MOVL R10, R_KX(SI)
+	ADDL $4, R10
+	CMPL R10, $12
+	CMOVLEQ R11, R10
+	MOVL R10, R_KY(SI)
+	VSUBPS X0, X12, X6
+	VSUBPS X0, X11, X7
+	VANDNPS X6, X14, X6
+	VANDNPS X7, X14, X7
+	VMAXPS X6, X7, X6
+	VANDNPS X0, X14, X7
+	VMOVHLPS X6, X6, X8
+	VMOVHLPS X7, X7, X9
+	VMAXPS X6, X8, X6
+	VMAXPS X7, X9, X7
+	VMOVSHDUP X6, X8
+	VMOVSHDUP X7, X9
+	VMAXSS X6, X8, X6
+	VMAXSS X7, X9, X7
+	VMULSS marginReach<>(SB), X6, X6
+	VMULSS marginOrigin<>(SB), X7, X7
+	VADDSS X6, X7, X6
+	VBROADCASTSS X6, X6
+	VORPS X5, X6, X6
+	VADDPS X6, X0, X7
+	VSUBPS X6, X0, X8
+	VMOVD CX, X9
+	VMULSS flattest<>(SB), X9, X9
+	VMAXSS smallest<>(SB), X9, X9
+	VBROADCASTSS X9, X9
+	VMAXPS X9, X4, X9
+	VORPS X5, X9, X9
+	VDIVPS X9, X13, X9
+	VMOVUPS X7, R_NEAR(SI)
+	VMOVUPS X8, R_FAR(SI)
+	VMOVUPS X9, R_NINV(SI)
+	VMOVUPS X0, R_ORG(SI)
+	VBROADCASTSS 12(DI)(R9*1), X10
+	VBLENDPS $8, X13, X1, X9
+	VDIVPS X10, X9, X10 // the fourth is -1/Dir[KZ]
+	VMOVUPS X10, R_SLOPE(SI)
+	VMOVMSKPS X1, AX
+	MOVL AX, R_SIGNS(SI)
+
+skip:
+	ADDQ $32, DI
+	ADDQ $R_SIZE, SI
+	DECQ BX
+	JNZ ready
+	VZEROUPPER
+	RET
+
+// Sets R10 to R15 from the signs in AX.
+#define ROWS \
 	MOVL AX, R10 \
-	ANDL $1, R10 \
-	SHLL $5, R10 \
 	MOVL AX, R11 \
-	ANDL $2, R11 \
-	SHLL $4, R11 \
-	ADDL $64, R11 \
 	MOVL AX, R12 \
+	ANDL $1, R10 \
+	ANDL $2, R11 \
 	ANDL $4, R12 \
+	SHLL $5, R10 \
+	SHLL $4, R11 \
 	SHLL $3, R12 \
+	ADDL $64, R11 \
 	ADDL $128, R12 \
 	MOVL R10, R13 \
-	XORL $32, R13 \
 	MOVL R11, R14 \
-	XORL $32, R14 \
 	MOVL R12, R15 \
+	XORL $32, R13 \
+	XORL $32, R14 \
 	XORL $32, R15
 
 // Loads Y0 to Y9.
 #define LOADRAY \
-	VBROADCASTSS (L_NEAR+0)(SI), Y0 \
-	VBROADCASTSS (L_NEAR+4)(SI), Y1 \
-	VBROADCASTSS (L_NEAR+8)(SI), Y2 \
-	VBROADCASTSS (L_FAR+0)(SI), Y3 \
-	VBROADCASTSS (L_FAR+4)(SI), Y4 \
-	VBROADCASTSS (L_FAR+8)(SI), Y5 \
-	VBROADCASTSS (L_NINV+0)(SI), Y6 \
-	VBROADCASTSS (L_NINV+4)(SI), Y7 \
-	VBROADCASTSS (L_NINV+8)(SI), Y8 \
-	VBROADCASTSS L_TMIN(SI), Y9
+	VBROADCASTSS (R_NEAR+0)(SI), Y0 \
+	VBROADCASTSS (R_NEAR+4)(SI), Y1 \
+	VBROADCASTSS (R_NEAR+8)(SI), Y2 \
+	VBROADCASTSS (R_FAR+0)(SI), Y3 \
+	VBROADCASTSS (R_FAR+4)(SI), Y4 \
+	VBROADCASTSS (R_FAR+8)(SI), Y5 \
+	VBROADCASTSS (R_NINV+0)(SI), Y6 \
+	VBROADCASTSS (R_NINV+4)(SI), Y7 \
+	VBROADCASTSS (R_NINV+8)(SI), Y8 \
+	VBROADCASTSS R_TMIN(SI), Y9
 
 // Tests the eight boxes of the node at AX: where they are entered goes to Y11, the mask of those that are hit to CX. Of two zeros the maximum
 // takes its first operand here, so that an entering distance is never -0.
@@ -212,14 +241,14 @@ GLOBL smallest<>(SB), RODATA|NOPTR, $4
 // Edge functions of the block at AX: Y14 = U, Y15 = V, Y0 = W, Y5 Y6 Y7 = depths of the corners (negated), Y8 to Y13 = sheared corners
 // (negated).
 #define EDGES \
-	MOVQ L_KX(SI), R9 \
-	MOVQ L_KY(SI), DI \
-	MOVQ L_KZ(SI), DX \
-	VBROADCASTSS L_ORG(SI)(R9*1), Y0 \
-	VBROADCASTSS L_ORG(SI)(DI*1), Y1 \
-	VBROADCASTSS L_ORG(SI)(DX*1), Y2 \
-	VBROADCASTSS L_SLOPE(SI)(R9*1), Y3 \
-	VBROADCASTSS L_SLOPE(SI)(DI*1), Y4 \
+	MOVL R_KX(SI), R9 \
+	MOVL R_KY(SI), DI \
+	MOVL R_KZ(SI), DX \
+	VBROADCASTSS R_ORG(SI)(R9*1), Y0 \
+	VBROADCASTSS R_ORG(SI)(DI*1), Y1 \
+	VBROADCASTSS R_ORG(SI)(DX*1), Y2 \
+	VBROADCASTSS R_SLOPE(SI)(R9*1), Y3 \
+	VBROADCASTSS R_SLOPE(SI)(DI*1), Y4 \
 	VSUBPS (AX)(DX*8), Y2, Y5 \
 	VSUBPS 96(AX)(DX*8), Y2, Y6 \
 	VSUBPS 192(AX)(DX*8), Y2, Y7 \
@@ -272,27 +301,27 @@ GLOBL smallest<>(SB), RODATA|NOPTR, $4
 
 // Stores the sheared corners and the edge functions where EXACT finds them.
 #define SAVEEDGES \
-	VMOVUPS Y8, L_AX(SI) \
-	VMOVUPS Y9, L_AY(SI) \
-	VMOVUPS Y10, L_BX(SI) \
-	VMOVUPS Y11, L_BY(SI) \
-	VMOVUPS Y12, L_CX(SI) \
-	VMOVUPS Y13, L_CY(SI) \
-	VMOVUPS Y14, L_EU(SI) \
-	VMOVUPS Y15, L_EV(SI) \
-	VMOVUPS Y0, L_EW(SI)
+	VMOVUPS Y8, L_AX(R8) \
+	VMOVUPS Y9, L_AY(R8) \
+	VMOVUPS Y10, L_BX(R8) \
+	VMOVUPS Y11, L_BY(R8) \
+	VMOVUPS Y12, L_CX(R8) \
+	VMOVUPS Y13, L_CY(R8) \
+	VMOVUPS Y14, L_EU(R8) \
+	VMOVUPS Y15, L_EV(R8) \
+	VMOVUPS Y0, L_EW(R8)
 
 // One edge function of lane DX in float64: p·q - r·s to e.
 #define EXACT(p, q, r, s, e) \
-	VCVTSS2SD p(SI)(DX*4), X8, X8 \
-	VCVTSS2SD q(SI)(DX*4), X9, X9 \
-	VCVTSS2SD r(SI)(DX*4), X10, X10 \
-	VCVTSS2SD s(SI)(DX*4), X11, X11 \
+	VCVTSS2SD p(R8)(DX*4), X8, X8 \
+	VCVTSS2SD q(R8)(DX*4), X9, X9 \
+	VCVTSS2SD r(R8)(DX*4), X10, X10 \
+	VCVTSS2SD s(R8)(DX*4), X11, X11 \
 	VMULSD X9, X8, X8 \
 	VMULSD X11, X10, X10 \
 	VSUBSD X10, X8, X8 \
 	VCVTSD2SS X8, X8, X8 \
-	VMOVSS X8, e(SI)(DX*4)
+	VMOVSS X8, e(R8)(DX*4)
 
 // One axis of the triangles' own boxes: Y1 = where they are entered so far, Y2 = where they are left. row is 0, 32 or 64, at 0, 4 or 8.
 #define OWNBOX(row, at) \
@@ -301,9 +330,9 @@ GLOBL smallest<>(SB), RODATA|NOPTR, $4
 	VMAXPS (96+row)(AX), Y10, Y12 \
 	VMINPS (192+row)(AX), Y11, Y11 \
 	VMAXPS (192+row)(AX), Y12, Y12 \
-	VBROADCASTSS (L_NINV+at)(SI), Y13 \
-	VBROADCASTSS (L_NEAR+at)(SI), Y5 \
-	VBROADCASTSS (L_FAR+at)(SI), Y6 \
+	VBROADCASTSS (R_NINV+at)(SI), Y13 \
+	VBROADCASTSS (R_NEAR+at)(SI), Y5 \
+	VBROADCASTSS (R_FAR+at)(SI), Y6 \
 	VBLENDVPS Y13, Y11, Y12, Y10 \
 	VBLENDVPS Y13, Y12, Y11, Y11 \
 	VSUBPS Y10, Y5, Y10 \
@@ -321,12 +350,12 @@ GLOBL smallest<>(SB), RODATA|NOPTR, $4
 	VMULPS Y14, Y5, Y5 \
 	VMULPS Y15, Y6, Y6 \
 	VMULPS Y0, Y7, Y7 \
-	VBROADCASTSS (L_SLOPE+12)(SI), Y10 \
+	VBROADCASTSS (R_SLOPE+12)(SI), Y10 \
 	VADDPS Y6, Y5, Y5 \
 	VADDPS Y7, Y5, Y5 \
 	VMULPS Y10, Y5, Y5 \
-	VBROADCASTSS L_TMIN(SI), Y7 \
-	VBROADCASTSS L_BEST(SI), Y3 \
+	VBROADCASTSS R_TMIN(SI), Y7 \
+	VBROADCASTSS L_BEST(R8), Y3 \
 	VMULPS Y9, Y5, Y8 \
 	VCMPPS $1, Y8, Y7, Y5 \
 	VCMPPS $2, Y3, Y8, Y6 \
@@ -354,46 +383,47 @@ GLOBL smallest<>(SB), RODATA|NOPTR, $4
 	TESTL CX, CX \
 	JZ none
 
-// func closestWide(t *wideHead, entry unsafe.Pointer, rays *geom.Ray, n int, hits *Hit, placement uint32, l *lanes)
-TEXT ·closestWide(SB), NOSPLIT, $0-56
-	MOVQ l+48(FP), SI
+// func closestWide(entry unsafe.Pointer, rays *wideRay, n int, hits *Hit, placement uint32, l *lanes)
+TEXT ·closestWide(SB), NOSPLIT, $0-48
+	MOVQ rays+8(FP), SI
+	MOVQ l+40(FP), R8
 
 nextRay:
-	SUBQ $1, n+24(FP)
+	SUBQ $1, n+16(FP)
 	JLT done
-	MOVQ rays+16(FP), DI
-	MOVQ t+0(FP), DX
-	MOVQ H_NODES(DX), R8
-	PREPARE(skipRay)
+	MOVL R_SIGNS(SI), AX
+	TESTL AX, AX
+	JS skipRay
+	ROWS
 
 	// The bound is the hit so far or TMax. A tie counts if that hit is of a later placement, never if there is none.
-	MOVQ hits+32(FP), CX
-	MOVL 28(DI), AX
+	MOVQ hits+24(FP), CX
+	MOVL R_TMAX(SI), AX
 	XORL DX, DX
 	MOVL 16(CX), R9
 	CMPL R9, $-1
 	JEQ bounded
 	MOVL (CX), AX
 	MOVL $-1, DI
-	CMPL placement+40(FP), R9
+	CMPL placement+32(FP), R9
 	CMOVLCS DI, DX
 
 bounded:
-	MOVL AX, L_BEST(SI)
-	MOVL DX, L_TIE(SI)
-	MOVL $0, L_FOUND(SI)
+	MOVL AX, L_BEST(R8)
+	MOVL DX, L_TIE(R8)
+	MOVL $0, L_FOUND(R8)
 	LOADRAY
-	VBROADCASTSS L_BEST(SI), Y10
-	LEAQ (L_STACK+8)(SI), BX
+	VBROADCASTSS L_BEST(R8), Y10
+	LEAQ (L_STACK+8)(R8), BX
 	MOVQ $0x00000000ffffffff, AX // ends the walk: entered at 0, child -1
-	MOVQ AX, L_STACK(SI)
-	MOVQ entry+8(FP), AX
+	MOVQ AX, L_STACK(R8)
+	MOVQ entry+0(FP), AX
 	JMP boxes
 	PCALIGN $64
 
 inner:
 	SHLQ $8, AX
-	ADDQ R8, AX
+	ADDQ L_NODES(R8), AX
 
 boxes:
 	BOXES
@@ -408,13 +438,13 @@ boxes:
 	JMP leaf
 
 two: // keys are distance << 32 | child; the nearest one stays in DI
-	VMOVUPS Y11, L_ENTER(SI)
-	MOVL L_ENTER(SI)(DX*4), DI
+	VMOVUPS Y11, L_ENTER(R8)
+	MOVL L_ENTER(R8)(DX*4), DI
 	MOVL N_CHILD(AX)(DX*4), DX
 	SHLQ $32, DI
 	ORQ DX, DI
 	TZCNTL R9, DX
-	MOVL L_ENTER(SI)(DX*4), CX
+	MOVL L_ENTER(R8)(DX*4), CX
 	MOVL N_CHILD(AX)(DX*4), DX
 	SHLQ $32, CX
 	ORQ DX, CX
@@ -433,11 +463,11 @@ two: // keys are distance << 32 | child; the nearest one stays in DI
 
 three: // further ones are inserted into this node's run on the stack, farthest first
 	LEAQ -8(BX), CX
-	MOVQ CX, L_RUN(SI)
+	MOVQ CX, L_RUN(R8)
 
 more:
 	TZCNTL R9, DX
-	MOVL L_ENTER(SI)(DX*4), CX
+	MOVL L_ENTER(R8)(DX*4), CX
 	MOVL N_CHILD(AX)(DX*4), DX
 	SHLQ $32, CX
 	ORQ DX, CX
@@ -453,7 +483,7 @@ sink:
 	PUSHQ -8(CX)
 	POPQ (CX)
 	SUBQ $8, CX
-	CMPQ CX, L_RUN(SI)
+	CMPQ CX, L_RUN(R8)
 	JHI sink
 
 place:
@@ -471,8 +501,7 @@ leaf:
 	ANDL $0x7fffffff, AX
 	LEAQ (AX)(AX*4), AX
 	SHLQ $6, AX
-	MOVQ t+0(FP), DX
-	ADDQ H_BLOCKS(DX), AX
+	ADDQ L_BLOCKS(R8), AX
 	EDGES
 	SIGNS
 	VMOVMSKPS Y4, CX
@@ -486,28 +515,28 @@ signed:
 	HITS(restore)
 	VMULPS Y15, Y9, Y1
 	VMULPS Y0, Y9, Y2
-	VMOVUPS Y8, L_T(SI)
-	VMOVUPS Y1, L_US(SI)
-	VMOVUPS Y2, L_VS(SI)
+	VMOVUPS Y8, L_T(R8)
+	VMOVUPS Y1, L_US(R8)
+	VMOVUPS Y2, L_VS(R8)
 
 pick:
 	TZCNTL CX, DX
-	MOVL L_T(SI)(DX*4), DI
+	MOVL L_T(R8)(DX*4), DI
 	MOVL B_INDEX(AX)(DX*4), R9
-	CMPL DI, L_BEST(SI)
+	CMPL DI, L_BEST(R8)
 	JHI pass
 	JNE take
-	CMPL R9, L_TIE(SI)
+	CMPL R9, L_TIE(R8)
 	JCC pass
 
 take:
-	MOVL DI, L_BEST(SI)
-	MOVL R9, L_TIE(SI)
-	MOVL $1, L_FOUND(SI)
-	MOVL L_US(SI)(DX*4), DI
-	MOVL L_VS(SI)(DX*4), R9
-	MOVL DI, L_U(SI)
-	MOVL R9, L_V(SI)
+	MOVL DI, L_BEST(R8)
+	MOVL R9, L_TIE(R8)
+	MOVL $1, L_FOUND(R8)
+	MOVL L_US(R8)(DX*4), DI
+	MOVL L_VS(R8)(DX*4), R9
+	MOVL DI, L_U(R8)
+	MOVL R9, L_V(R8)
 
 pass:
 	BLSRL CX, CX
@@ -515,14 +544,14 @@ pass:
 
 restore:
 	LOADRAY
-	VBROADCASTSS L_BEST(SI), Y10
+	VBROADCASTSS L_BEST(R8), Y10
 
 pop:
 	SUBQ $8, BX
 	MOVQ (BX), AX
 	MOVQ AX, DX
 	SHRQ $32, DX
-	CMPL DX, L_BEST(SI)
+	CMPL DX, L_BEST(R8)
 	JHI pop
 	MOVL AX, AX
 	TESTL AX, AX
@@ -538,63 +567,64 @@ edge:
 	EXACT(L_BX, L_AY, L_BY, L_AX, L_EW)
 	BLSRL CX, CX
 	JNZ edge
-	VMOVUPS L_EU(SI), Y14
-	VMOVUPS L_EV(SI), Y15
-	VMOVUPS L_EW(SI), Y0
+	VMOVUPS L_EU(R8), Y14
+	VMOVUPS L_EV(R8), Y15
+	VMOVUPS L_EW(R8), Y0
 	SIGNS
 	JMP signed
 
 endRay:
-	CMPL L_FOUND(SI), $0
+	CMPL L_FOUND(R8), $0
 	JEQ skipRay
-	MOVQ hits+32(FP), CX
-	MOVL L_BEST(SI), AX
-	MOVL L_U(SI), DX
-	MOVL L_V(SI), DI
+	MOVQ hits+24(FP), CX
+	MOVL L_BEST(R8), AX
+	MOVL L_U(R8), DX
+	MOVL L_V(R8), DI
 	MOVL AX, 0(CX)
 	MOVL DX, 4(CX)
 	MOVL DI, 8(CX)
-	MOVL L_TIE(SI), AX
-	MOVL placement+40(FP), DX
+	MOVL L_TIE(R8), AX
+	MOVL placement+32(FP), DX
 	MOVL AX, 12(CX)
 	MOVL DX, 16(CX)
 
 skipRay:
-	ADDQ $32, rays+16(FP)
-	ADDQ $20, hits+32(FP)
+	ADDQ $R_SIZE, SI
+	ADDQ $20, hits+24(FP)
 	JMP nextRay
 
 done:
 	VZEROUPPER
 	RET
 
-// func occludedWide(t *wideHead, entry unsafe.Pointer, rays *geom.Ray, n int, blocked *bool, l *lanes)
-TEXT ·occludedWide(SB), NOSPLIT, $0-48
-	MOVQ l+40(FP), SI
+// func occludedWide(entry unsafe.Pointer, rays *wideRay, n int, blocked *bool, l *lanes)
+TEXT ·occludedWide(SB), NOSPLIT, $0-40
+	MOVQ rays+8(FP), SI
+	MOVQ l+32(FP), R8
 
 nextRay:
-	SUBQ $1, n+24(FP)
+	SUBQ $1, n+16(FP)
 	JLT done
-	MOVQ blocked+32(FP), CX
+	MOVQ blocked+24(FP), CX
 	CMPB (CX), $0
 	JNE skipRay
-	MOVQ rays+16(FP), DI
-	MOVQ t+0(FP), DX
-	MOVQ H_NODES(DX), R8
-	PREPARE(skipRay)
-	MOVL 28(DI), AX
-	MOVL AX, L_BEST(SI)
+	MOVL R_SIGNS(SI), AX
+	TESTL AX, AX
+	JS skipRay
+	ROWS
+	MOVL R_TMAX(SI), AX
+	MOVL AX, L_BEST(R8)
 	LOADRAY
-	VBROADCASTSS L_BEST(SI), Y10
-	LEAQ (L_STACK+4)(SI), BX
-	MOVL $-1, L_STACK(SI) // ends the walk
-	MOVQ entry+8(FP), AX
+	VBROADCASTSS L_BEST(R8), Y10
+	LEAQ (L_STACK+4)(R8), BX
+	MOVL $-1, L_STACK(R8) // ends the walk
+	MOVQ entry+0(FP), AX
 	JMP boxes
 	PCALIGN $64
 
 inner:
 	SHLQ $8, AX
-	ADDQ R8, AX
+	ADDQ L_NODES(R8), AX
 
 boxes:
 	BOXES
@@ -624,8 +654,7 @@ leaf:
 	ANDL $0x7fffffff, AX
 	LEAQ (AX)(AX*4), AX
 	SHLQ $6, AX
-	MOVQ t+0(FP), DX
-	ADDQ H_BLOCKS(DX), AX
+	ADDQ L_BLOCKS(R8), AX
 	EDGES
 	SIGNS
 	VMOVMSKPS Y4, CX
@@ -642,13 +671,13 @@ signed:
 	VMOVMSKPS Y4, CX
 	TESTL CX, CX
 	JZ restore
-	MOVQ blocked+32(FP), CX
+	MOVQ blocked+24(FP), CX
 	MOVB $1, (CX)
 	JMP skipRay
 
 restore:
 	LOADRAY
-	VBROADCASTSS L_BEST(SI), Y10
+	VBROADCASTSS L_BEST(R8), Y10
 
 pop:
 	SUBQ $4, BX
@@ -666,15 +695,15 @@ edge:
 	EXACT(L_BX, L_AY, L_BY, L_AX, L_EW)
 	BLSRL CX, CX
 	JNZ edge
-	VMOVUPS L_EU(SI), Y14
-	VMOVUPS L_EV(SI), Y15
-	VMOVUPS L_EW(SI), Y0
+	VMOVUPS L_EU(R8), Y14
+	VMOVUPS L_EV(R8), Y15
+	VMOVUPS L_EW(R8), Y0
 	SIGNS
 	JMP signed
 
 skipRay:
-	ADDQ $32, rays+16(FP)
-	ADDQ $1, blocked+32(FP)
+	ADDQ $R_SIZE, SI
+	ADDQ $1, blocked+24(FP)
 	JMP nextRay
 
 done:
