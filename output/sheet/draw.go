@@ -78,7 +78,7 @@ func (d *drawing) tile(t tileItem, src Source) error {
 // larger than the cell.
 func (d *drawing) sizeIn(size, cell image.Point) image.Point {
 	by := d.scale
-	fill := min(float64(cell.X)/float64(size.X), float64(cell.Y)/float64(size.Y))
+	fill := filling(size, cell)
 	if d.sheet.Tile != [2]int{} || by > fill {
 		by = fill
 	}
@@ -104,7 +104,7 @@ func (d *drawing) failed(cell image.Rectangle, reason string) {
 	w, h := float64(cell.Dx()), float64(cell.Dy())
 	d.stroke(cell, 0, h, w, 0, max(1, u/16), d.ground.color(thirdInk))
 	st := style{sized(u, captionSize), regular, firstInk}
-	lead := math.Ceil(1.35 * st.size)
+	lead := leadFor(u, 0.85, st.size)
 	pad := math.Ceil(u / 2)
 	lines := d.set.wrap(reason, st, w-2*pad, max(1, min(6, int((h-2*pad)/lead))))
 	var box image.Rectangle

@@ -150,10 +150,10 @@ func (c *composer) composeWith(p part, u float64) *plate {
 	g := &grid{u: u, plate: &plate{module: u}}
 	g.heading = style{sized(u, headingSize), medium, firstInk}
 	g.name = style{sized(u, headingSize), regular, secondInk}
-	g.headingLead = math.Ceil(max(u, 1.25*g.heading.size))
+	g.headingLead = leadFor(u, 1, g.heading.size)
 	g.captionStyle = style{sized(u, captionSize), regular, secondInk}
 	if c.sheet.Caption != "" {
-		g.captionLead = math.Ceil(max(u, 1.4*g.captionStyle.size))
+		g.captionLead = leadFor(u, 1, g.captionStyle.size)
 	}
 	xs, right := c.columnPlaces(p, u)
 	rowHeads, headWidth := c.rowHeadings(p, g, right)
@@ -229,7 +229,7 @@ func (c *composer) head(p part, g *grid) float64 {
 	u := g.u
 	title := style{sized(u, titleSize), medium, firstInk}
 	y := 2*u + math.Round(c.set.capHeight(title))
-	y = g.putAll(c.set.wrap(c.title(), title, g.measure, 3), g.left, y, math.Ceil(1.25*title.size))
+	y = g.putAll(c.set.wrap(c.title(), title, g.measure, 3), g.left, y, leadFor(u, 1.75, title.size))
 	y += math.Ceil(1.5 * u)
 	return g.putAll(c.set.wrap(c.subject(p), g.name, g.measure, 3), g.left, y, g.headingLead)
 }
@@ -390,14 +390,14 @@ func (c *composer) tile(p part, g *grid, cell int, x, y float64) {
 	g.plate.tiles = append(g.plate.tiles, tileItem{image.Rectangle{at, at.Add(c.cell)}, pl})
 	if g.captionLead > 0 && pl.frame >= 0 {
 		text := captionOf(c.sheet.Caption, &c.plan.Frames[pl.frame], pl.pass, c.words)
-		g.put(c.set.fit(text, g.captionStyle, float64(c.cell.X)), g.left+x, y+float64(c.cell.Y)+math.Round(0.72*g.captionLead))
+		g.put(c.set.fit(text, g.captionStyle, float64(c.cell.X)), g.left+x, y+float64(c.cell.Y)+math.Ceil(max(0.72*g.captionLead, mostAscent*g.captionStyle.size)))
 	}
 }
 
 // footLines lays the foot, a paragraph after another, and closes the page.
 func (c *composer) footLines(g *grid, y float64) {
 	st := style{sized(g.u, footSize), regular, secondInk}
-	lead := math.Ceil(max(0.8*g.u, 1.35*st.size))
+	lead := leadFor(g.u, 0.8, st.size)
 	gap := math.Ceil(2 * st.size)
 	y += math.Ceil(1.5 * g.u)
 	for n, items := range c.foot {

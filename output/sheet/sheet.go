@@ -121,21 +121,30 @@ func plates(p *model.Plan, s *model.Sheet, o Options) ([]pagePlan, *composer, er
 	return pages, c, nil
 }
 
-// naturalCell is the place that every tile of a sheet has: the sheet's own Tile, or the largest picture.
+// naturalCell is the place that every tile of a sheet has: as large as the largest picture, scaled to the sheet's own Tile where it has one.
 func naturalCell(p *model.Plan, s *model.Sheet, pv *pivot) image.Point {
-	if s.Tile != [2]int{} {
-		return image.Pt(s.Tile[0], s.Tile[1])
-	}
 	var cell image.Point
 	for _, i := range pv.frames {
 		if f := &p.Frames[i]; f.Failure == "" {
-			cell.X, cell.Y = max(cell.X, f.Settings.Width), max(cell.Y, f.Settings.Height)
+			size := image.Pt(f.Settings.Width, f.Settings.Height)
+			if s.Tile != [2]int{} {
+				size = scaled(size, filling(size, image.Pt(s.Tile[0], s.Tile[1])))
+			}
+			cell.X, cell.Y = max(cell.X, size.X), max(cell.Y, size.Y)
 		}
 	}
-	if cell.X < 1 || cell.Y < 1 {
-		cell = image.Pt(320, 240) // nothing on the sheet could be rendered: room for the reasons
+	switch {
+	case cell.X > 0 && cell.Y > 0:
+		return cell
+	case s.Tile != [2]int{}:
+		return image.Pt(s.Tile[0], s.Tile[1])
 	}
-	return cell
+	return image.Pt(320, 240) // nothing on the sheet could be rendered: room for the reasons
+}
+
+// filling is the scale at which a picture just fits a box.
+func filling(size, box image.Point) float64 {
+	return min(float64(box.X)/float64(size.X), float64(box.Y)/float64(size.Y))
 }
 
 // cutToFit returns the parts of a table that fit a page each. It makes the composer's cell smaller first, unless the sheet has
@@ -167,7 +176,11 @@ func (c *composer) cutToFit(t *table) []part {
 	// Cut columns until a page is narrow enough, then rows until it is low enough.
 	rows, columns := max(1, len(t.rows)), len(t.columns)
 	if c.pivot.oneAxis() {
-		n := max(1, columns/(int(maxSide/c.cell.X+1)*int(maxSide/c.cell.Y+1)))
+		inLine := maxSide/c.cell.X + 1
+		if c.sheet.PerLine > 0 {
+			inLine = c.sheet.PerLine
+		}
+		n := max(1, columns/(inLine*(maxSide/c.cell.Y+1)))
 		for n < columns && !fits(c.cut(t, 0, 1, 0, share(columns, n))) {
 			n = min(columns, n+max(1, n/8))
 		}

@@ -37,7 +37,13 @@ const minSize = 9
 type setter struct {
 	fonts [3]*sfnt.Font
 	faces map[faceKey]font.Face
+	fits  map[glyphKey]float64
 	buf   sfnt.Buffer
+}
+
+type glyphKey struct {
+	weight weight
+	r      rune
 }
 
 type faceKey struct {
@@ -46,7 +52,7 @@ type faceKey struct {
 }
 
 func newSetter() (*setter, error) {
-	s := &setter{faces: map[faceKey]font.Face{}}
+	s := &setter{faces: map[faceKey]font.Face{}, fits: map[glyphKey]float64{}}
 	for w, data := range [...][]byte{regular: goregular.TTF, medium: gomedium.TTF, fallback: dejavusans.TTF} {
 		f, err := sfnt.Parse(data)
 		if err != nil {
@@ -91,12 +97,12 @@ type line struct {
 func (s *setter) set(text string, st style) line {
 	l := line{text: text, style: st}
 	var b strings.Builder
-	current := fallback
+	current := faceKey{fallback, st.size}
 	flush := func() {
 		if b.Len() == 0 {
 			return
 		}
-		f := s.face(faceKey{current, st.size})
+		f := s.face(current)
 		l.runs = append(l.runs, run{f, b.String(), l.width})
 		bounds, advance := font.BoundString(f, b.String())
 		if !bounds.Empty() {
@@ -119,17 +125,26 @@ func (s *setter) set(text string, st style) line {
 		}
 		w := st.weight
 		if !s.has(w, r) {
-			if w = fallback; !s.has(w, r) {
-				r = unicode.ReplacementChar
-			}
+			w = fallback
 		}
-		if w != current {
+		fit := s.fitOf(w, r)
+		if !s.has(w, r) || fit < smallestFit {
+			w, r, fit = fallback, unicode.ReplacementChar, 1
+		}
+		if k := (faceKey{w, st.size * fit}); k != current {
 			flush()
-			current = w
+			current = k
 		}
 		b.WriteRune(r)
 	}
 	flush()
+	// A mark without its letter would stand before the line's beginning, over what is there.
+	if over := -l.left; over > st.size/8 {
+		for i := range l.runs {
+			l.runs[i].x += over
+		}
+		l.left, l.right, l.width = 0, l.right+over, l.width+over
+	}
 	return l
 }
 
@@ -138,6 +153,40 @@ func pixels[T ~int32](v T) float64 { return float64(v) / 64 }
 func (s *setter) has(w weight, r rune) bool {
 	i, err := s.fonts[w].GlyphIndex(&s.buf, r)
 	return err == nil && i != 0
+}
+
+// How far ink may reach over and under the baseline, in ems, so that lines leadFor apart never touch. What reaches
+// further (capitals with two marks, signs that enclose) is set smaller, and what would have to be smaller than smallestFit is not set.
+const (
+	mostAscent  = 0.95
+	mostDescent = 0.25
+	smallestFit = 0.7
+)
+
+// fitOf is the factor at which a glyph keeps to mostAscent and mostDescent: 1 for nearly all.
+func (s *setter) fitOf(w weight, r rune) float64 {
+	k := glyphKey{w, r}
+	fit, ok := s.fits[k]
+	if !ok {
+		fit = 1
+		const em = 100
+		if b, _, ok := s.face(faceKey{w, em}).GlyphBounds(r); ok {
+			if up := -pixels(b.Min.Y) / em; up > mostAscent {
+				fit = mostAscent / up
+			}
+			if down := pixels(b.Max.Y) / em; down > mostDescent {
+				fit = min(fit, mostDescent/down)
+			}
+		}
+		s.fits[k] = fit
+	}
+	return fit
+}
+
+// leadFor is the distance of baselines for a size of type: the given modules, but never so little that lines could touch,
+// with a pixel for the rounding of either line.
+func leadFor(u, modules, size float64) float64 {
+	return math.Ceil(max(u*modules, (mostAscent+mostDescent)*size+2))
 }
 
 // clean composes a text and takes out what has no place on one line: controls become spaces, marks of direction and width go.
@@ -189,11 +238,8 @@ func (s *setter) fit(text string, st style, width float64) line {
 	r := []rune(clean(text))
 	cut := func(keep int) line {
 		head, tail := (keep+1)/2, len(r)-keep/2
-		for head < tail && unicode.Is(unicode.Mn, r[head]) {
+		for head > 0 && head < len(r) && unicode.Is(unicode.Mn, r[head]) {
 			head-- // a mark goes with its letter
-			if head == 0 {
-				break
-			}
 		}
 		for tail < len(r) && unicode.Is(unicode.Mn, r[tail]) {
 			tail++
