@@ -1,0 +1,158 @@
+--- Profiles, handles and thrown forms: what the wheel and the hands make of clay, as meshes. All lengths are in metres.
+local keys = require "keys"
+local forms = {}
+
+local function is_corner(a, b)
+  for i = 1, #a do
+    if a[i] ~= b[i] then return false end
+  end
+  return true
+end
+
+--- One piece of a centripetal Catmull-Rom curve, from b to c, u in [0, 1] (Barry & Goldman 1988; centripetal: Yuksel et al. 2011,
+--- which makes neither loops nor bulges where points lie close together).
+local function between(a, b, c, d, u)
+  local function gap(p, q)
+    local sum = 0
+    for i = 1, #p do sum = sum + (p[i] - q[i]) ^ 2 end
+    return math.max(1e-9, math.sqrt(math.sqrt(sum)))
+  end
+  local t1 = gap(a, b)
+  local t2 = t1 + gap(b, c)
+  local t3 = t2 + gap(c, d)
+  local t = t1 + u * (t2 - t1)
+  local out = {}
+  for i = 1, #b do
+    local function mix(x, y, from, to) return (x * (to - t) + y * (t - from)) / (to - from) end
+    local p, q, r = mix(a[i], b[i], 0, t1), mix(b[i], c[i], t1, t2), mix(c[i], d[i], t2, t3)
+    out[i] = keys.round(mix(mix(p, q, 0, t2), mix(q, r, t1, t3), t1, t2))
+  end
+  return out
+end
+
+--- A smooth curve through points {r, y} or {x, y, z}, as a list of points for mesh.lathe or forms.tube. A point given twice in a row
+--- stays a corner. steps is how many pieces lie between two points, 1 to 64; default 8.
+function forms.smooth(points, steps)
+  steps = steps or 8
+  if type(points) ~= "table" or #points < 2 then error("forms.smooth: takes a list of at least 2 points", 0) end
+  if type(steps) ~= "number" or steps < 1 or steps > 64 then error("forms.smooth: steps must be a number 1 to 64", 0) end
+  local function beyond(p, q) -- the point as far behind q as p lies before it
+    local out = {}
+    for i = 1, #p do out[i] = 2 * q[i] - p[i] end
+    return out
+  end
+  local out = { points[1] }
+  for i = 1, #points - 1 do
+    local b, c = points[i], points[i + 1]
+    if not is_corner(b, c) then
+      local a, d = points[i - 1], points[i + 2]
+      if not a or is_corner(a, b) then a = beyond(c, b) end
+      if not d or is_corner(c, d) then d = beyond(b, c) end
+      for k = 1, steps do
+        local p = k < steps and between(a, b, c, d, k / steps) or c
+        if #p == 2 then p = { math.max(0, p[1]), p[2] } end -- a profile does not cross the axis
+        out[#out + 1] = p
+      end
+    end
+  end
+  return out
+end
+
+--- A form from the wheel that was shaped by hand while wet: a lathe whose every ring may leave the circle.
+---   profile   points {radius, y} as for mesh.lathe, outward along the foot, up the outside and back down the inside
+---   shape     function(angle, radius, y) that returns the radius and y of the point there; angle in degrees, counter-clockwise seen
+---             from above, 0 towards +x. Default: leaves all as it is
+---   segments  around, 8 to 512; default 128
+---   crease    faces that meet at more degrees than this keep their edge, 0 to 180; default 40
+function forms.thrown(given)
+  local o = keys.read("forms.thrown", given, {
+    profile = { kind = "any" }, shape = { kind = "function" }, segments = { 128, low = 8, high = 512, whole = true },
+    crease = { 40, low = 0, high = 180, unit = "degrees" },
+  })
+  if type(o.profile) ~= "table" or #o.profile < 2 then error("forms.thrown: profile must be a list of at least 2 points {radius, y}", 0) end
+  local positions, triangles, rings = {}, {}, {}
+  for i, p in ipairs(o.profile) do
+    local ring = {}
+    for k = 0, o.segments - 1 do
+      local angle = 360 * k / o.segments
+      local r, y = p[1], p[2]
+      if o.shape then r, y = o.shape(angle, r, y) end
+      if type(r) ~= "number" or type(y) ~= "number" then error("forms.thrown: shape must return a radius and a y", 0) end
+      local x, z = r * math.cos(math.rad(angle)), -r * math.sin(math.rad(angle))
+      if p[1] == 0 then x, z = 0, 0 end
+      positions[#positions + 1] = { keys.round(x), keys.round(y), keys.round(z) }
+      ring[k] = #positions
+      if p[1] == 0 then -- one point on the axis serves all
+        for rest = 1, o.segments - 1 do ring[rest] = #positions end
+        break
+      end
+    end
+    rings[i] = ring
+  end
+  for i = 1, #rings - 1 do
+    for k = 0, o.segments - 1 do
+      local n = (k + 1) % o.segments
+      local a, b, c, d = rings[i][k], rings[i][n], rings[i + 1][n], rings[i + 1][k]
+      if a ~= b then triangles[#triangles + 1] = { a, b, c } end
+      if c ~= d then triangles[#triangles + 1] = { a, c, d } end
+    end
+  end
+  return mesh.raw{ positions = positions, triangles = triangles, smooth = o.crease }
+end
+
+--- A pulled handle, a spout, a lamp's arm or its cord: a round bar along a path, closed at both ends.
+---   path      list of points {x, y, z}, at least 2; forms.smooth makes a curve of a few
+---   radius    of the bar where it begins, > 0; default 0.005
+---   tip       radius where it ends, > 0; default as radius
+---   flat      height of its section over its width, 0.1 to 10; default 1, round. The width lies across the plane in which the path starts
+---   segments  around, 6 to 256; default 32
+function forms.tube(given)
+  local o = keys.read("forms.tube", given, {
+    path = { kind = "any" }, radius = { 0.005, above = 0, unit = "metres" }, tip = { kind = "number", above = 0, unit = "metres" },
+    flat = { 1, low = 0.1, high = 10 }, segments = { 32, low = 6, high = 256, whole = true },
+  })
+  local path = o.path
+  if type(path) ~= "table" or #path < 2 then error("forms.tube: path must be a list of at least 2 points {x, y, z}", 0) end
+  local function unit(v, why)
+    local l = math.sqrt(v[1] ^ 2 + v[2] ^ 2 + v[3] ^ 2)
+    if l == 0 then error("forms.tube: " .. why, 0) end
+    return { v[1] / l, v[2] / l, v[3] / l }
+  end
+  local function cross(a, b) return { a[2] * b[3] - a[3] * b[2], a[3] * b[1] - a[1] * b[3], a[1] * b[2] - a[2] * b[1] } end
+  local function way(i, k) return { path[k][1] - path[i][1], path[k][2] - path[i][2], path[k][3] - path[i][3] } end
+  local positions, triangles = {}, {}
+  local across -- carried along the path with the least twist
+  for i = 1, #path do
+    local t = unit(way(math.max(1, i - 1), math.min(#path, i + 1)), "the path turns back on itself or stands still at point " .. i)
+    if not across then
+      local bend = cross(t, way(1, #path))
+      local flat_path = bend[1] ^ 2 + bend[2] ^ 2 + bend[3] ^ 2 < 1e-12
+      across = flat_path and cross(t, math.abs(t[2]) < 0.9 and { 0, 1, 0 } or { 1, 0, 0 }) or bend
+    end
+    local along = across[1] * t[1] + across[2] * t[2] + across[3] * t[3]
+    across = unit({ across[1] - along * t[1], across[2] - along * t[2], across[3] - along * t[3] }, "the path has a sharp bend at point " .. i)
+    local up = cross(t, across)
+    local r = o.radius + ((o.tip or o.radius) - o.radius) * (i - 1) / (#path - 1)
+    for k = 0, o.segments - 1 do
+      local c, s = r * math.cos(2 * math.pi * k / o.segments), r * o.flat * math.sin(2 * math.pi * k / o.segments)
+      local p = {}
+      for axis = 1, 3 do p[axis] = keys.round(path[i][axis] + c * across[axis] + s * up[axis]) end
+      positions[#positions + 1] = p
+    end
+  end
+  for i = 0, #path - 2 do
+    for k = 1, o.segments do
+      local a, b = i * o.segments + k, i * o.segments + k % o.segments + 1
+      triangles[#triangles + 1] = { a, b, b + o.segments }
+      triangles[#triangles + 1] = { a, b + o.segments, a + o.segments }
+    end
+  end
+  for k = 2, o.segments - 1 do -- the ends
+    local last = (#path - 1) * o.segments
+    triangles[#triangles + 1] = { 1, k + 1, k }
+    triangles[#triangles + 1] = { last + 1, last + k, last + k + 1 }
+  end
+  return mesh.raw{ positions = positions, triangles = triangles, smooth = 60 }
+end
+
+return forms
