@@ -31,7 +31,7 @@ function mesh.box(keys) end
 
 ---@class mesh.sphere.keys
 ---@field radius number metres, > 0
----@field segments? integer around, 3 to 4096; default 96
+---@field segments? integer around, 3 to 1024; default 96
 
 --- A sphere.
 --- Example: mesh.sphere{ radius = 0.05 }
@@ -42,7 +42,7 @@ function mesh.sphere(keys) end
 ---@class mesh.cylinder.keys
 ---@field radius number metres, > 0
 ---@field height number along y, metres, > 0
----@field segments? integer around, 3 to 4096; default 96
+---@field segments? integer around, 3 to 1024; default 96
 
 --- A closed cylinder that stands upright.
 --- Example: mesh.cylinder{ radius = 0.04, height = 0.1 }
@@ -54,7 +54,7 @@ function mesh.cylinder(keys) end
 ---@field radius number of its foot, metres, at least 0
 ---@field top? number radius of its upper end, metres, at least 0; default 0, a point
 ---@field height number along y, metres, > 0
----@field segments? integer around, 3 to 4096; default 96
+---@field segments? integer around, 3 to 1024; default 96
 
 --- A closed cone, or a frustum, that stands upright.
 --- Example: mesh.cone{ radius = 0.06, top = 0.03, height = 0.1 }
@@ -64,7 +64,7 @@ function mesh.cone(keys) end
 
 ---@class mesh.disk.keys
 ---@field radius number metres, > 0
----@field segments? integer around, 3 to 4096; default 96
+---@field segments? integer around, 3 to 1024; default 96
 
 --- A flat disk that faces up.
 --- Example: mesh.disk{ radius = 0.1 }
@@ -75,7 +75,7 @@ function mesh.disk(keys) end
 ---@class mesh.torus.keys
 ---@field radius number from the middle to the middle of the tube, metres, > 0
 ---@field tube number radius of the tube, metres, > 0, less than radius
----@field segments? integer around, 3 to 4096; default 96
+---@field segments? integer around, 3 to 1024; default 96
 
 --- A ring that lies flat.
 --- Example: mesh.torus{ radius = 0.08, tube = 0.02 }
@@ -85,7 +85,7 @@ function mesh.torus(keys) end
 
 ---@class mesh.lathe.keys
 ---@field profile number[][] points {radius, y} in metres, outward along the foot, up the outside and back down the inside
----@field segments? integer around, 3 to 4096; default 96
+---@field segments? integer around, 3 to 1024; default 96
 ---@field crease? number edges of the profile that turn by more degrees stay sharp, 0 to 180; default 30
 
 --- A form turned about the vertical, as on a potter's wheel.
@@ -105,7 +105,7 @@ function mesh.lathe(keys) end
 function mesh.extrude(keys) end
 
 ---@class mesh.test_form.keys
----@field segments? integer around, 3 to 4096; default 96
+---@field segments? integer around, 3 to 1024; default 96
 
 --- The workshop's form for judging materials: curves of several radii, a crease, a hollow and a flat.
 --- Example: mesh.test_form{}

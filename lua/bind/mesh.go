@@ -55,6 +55,13 @@ func meshCalls() []call {
 // prism, 30 degrees a side, is the first that reads as round.
 const smoothDegrees = 30
 
+// maxSegments bounds how finely a form is turned: at 1024 a circle that fills the largest picture strays from the true one by
+// 8192·(1 - cos(π/1024)) = 0.04 pixels. maxLathe keeps a turned form, in triangles, to what a scene may hold several of.
+const (
+	maxSegments = 1024
+	maxLathe    = 8_000_000
+)
+
 func defaultForm(kind model.MeshKind) *form {
 	f := &form{Mesh: model.Mesh{Kind: kind}}
 	switch kind {
@@ -105,7 +112,10 @@ func (a *args) readForm(f *form) lua.LValue {
 		a.fileKeys(f)
 	}
 	if f.segmented() {
-		a.integer("segments", &f.Segments, 3, mesh.MaxSegments)
+		a.integer("segments", &f.Segments, 3, maxSegments)
+	}
+	if n := 2 * len(f.Profile) * max(f.Segments, mesh.DefaultSegments); f.Kind == model.MeshLathe && n > maxLathe {
+		a.failf("a profile of %d points in %d segments makes %d triangles, at most %d are accepted", len(f.Profile), max(f.Segments, mesh.DefaultSegments), n, maxLathe)
 	}
 	f.id, f.serial = nil, 0
 	switch f.Kind {

@@ -169,23 +169,24 @@ func (t *thing) placement(e *Env) (model.Placement, error) {
 	if t.placed {
 		return t.Placement, nil
 	}
+	t.Mesh = t.form.planID(e)
+	if len(t.slots) == 0 && (t.material != nil || t.form.Kind != model.MeshFile) {
+		t.Materials = []model.MaterialID{t.slotMaterial(e, "", 0)}
+		t.placed = true
+		return t.Placement, nil
+	}
 	m, err := t.form.build(e)
 	if err != nil {
 		return model.Placement{}, err
 	}
-	t.Mesh = t.form.planID(e)
 	t.Materials = nil
-	if t.material != nil && len(t.slots) == 0 {
-		t.Materials = []model.MaterialID{t.material.planID(e)}
-	} else {
-		same := true
-		for i, slot := range m.SlotNames {
-			t.Materials = append(t.Materials, t.slotMaterial(e, slot, i))
-			same = same && t.Materials[i] == t.Materials[0]
-		}
-		if same {
-			t.Materials = t.Materials[:1]
-		}
+	same := true
+	for i, slot := range m.SlotNames {
+		t.Materials = append(t.Materials, t.slotMaterial(e, slot, i))
+		same = same && t.Materials[i] == t.Materials[0]
+	}
+	if same {
+		t.Materials = t.Materials[:1]
 	}
 	t.placed = true
 	return t.Placement, nil
@@ -199,8 +200,10 @@ func (t *thing) slotMaterial(e *Env, slot string, i int) model.MaterialID {
 	if t.material != nil {
 		return t.material.planID(e)
 	}
-	if m, err := t.form.build(e); err == nil && m != nil && i < len(m.Materials) {
-		return e.materialID(m.Materials[i])
+	if t.form.Kind == model.MeshFile {
+		if m, err := t.form.build(e); err == nil && m != nil && i < len(m.Materials) {
+			return e.materialID(m.Materials[i])
+		}
 	}
 	return e.materialID(defaultMaterial())
 }
