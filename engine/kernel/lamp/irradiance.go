@@ -109,7 +109,7 @@ func (l *Lamp) diskIrradiance(d, n geom.Vec3d) float64 {
 	minus, plus := rho-l.Radius, rho+l.Radius
 	h2 := float64(h * h)
 	lo, hi := float64(minus*minus)+h2, float64(plus*plus)+h2 // A - B, A + B
-	a, b, w := (hi+lo)/2, 2*float64(rho*l.Radius), math.Sqrt(float64(lo*hi))
+	a, b, w := float64((hi+lo)/2), 2*float64(rho*l.Radius), math.Sqrt(float64(lo*hi))
 	s0, c0 := num.SinCosWide(from)
 	s1, c1 := num.SinCosWide(to)
 	den0, den1 := a+w+float64(b*c0), a+w+float64(b*c1)
@@ -120,7 +120,7 @@ func (l *Lamp) diskIrradiance(d, n geom.Vec3d) float64 {
 		psiOverB = psi / b
 		sinOver = -2 / b * num.AtanhWide(float64(b*(c1-c0))/(hi+lo+float64(b*(c0+c1))))
 	}
-	one := (turn - 2*psi) / w
+	one := (turn - float64(2*psi)) / w
 	cosOver := float64(2*a/w*psiOverB) - float64(b*turn)/float64(w*(w+a))
 
 	rh := float64(l.Radius * h)

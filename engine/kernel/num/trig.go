@@ -62,11 +62,11 @@ func SinCos(x float32) (sin, cos float32) {
 }
 
 // SinCosOctant returns the sine and the cosine of r, |r| <= π/4, with relative errors below 3e-10: what is needed for
-// float32 results.
+// float32 results. It is inlined, so r is rounded here, in case it is a product.
 func SinCosOctant(r float64) (sin, cos float64) {
 	r2 := r * r
 	r4 := r2 * r2
-	sin = r + float64(float64(r*r2)*(shortSin1+float64(r2*shortSin2)+float64(r4*(shortSin3+float64(r2*shortSin4)))))
+	sin = float64(r) + float64(float64(r*r2)*(shortSin1+float64(r2*shortSin2)+float64(r4*(shortSin3+float64(r2*shortSin4)))))
 	cos = 1 + float64(r2*(shortCos1+float64(r2*shortCos2)+float64(r4*(shortCos3+float64(r2*shortCos4)))))
 	return sin, cos
 }

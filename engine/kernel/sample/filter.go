@@ -19,7 +19,7 @@ var filterTable = makeFilterTable()
 // stands for u in [0, 1]: the inverse of the window's integral, so that all samples of a pixel weigh the same.
 // Source: Harris 1978, minimum four-term window; Ernst, Stamminger & Greiner 2006, "Filter importance sampling".
 func BlackmanHarrisOffset(u float32) float32 {
-	x := u * filterCells
+	x := float32(u * filterCells)
 	i := min(max(int(x), 0), filterCells-1)
 	return filterTable[i] + float32((x-float32(i))*(filterTable[i+1]-filterTable[i]))
 }
@@ -30,7 +30,7 @@ func windowIntegral(t float64) float64 {
 	const a0, a1, a2, a3 = 0.35875, 0.48829, 0.14128, 0.01168
 	s1, c1 := num.SinCosWide(float64(2 * math.Pi * t))
 	s2 := 2 * float64(s1*c1)
-	s3 := float64(s1 * (3 - 4*float64(s1*s1)))
+	s3 := float64(s1 * (3 - float64(4*float64(s1*s1))))
 	sines := float64(s1*-a1) + float64(s2*(a2/2)) + float64(s3*(-a3/3))
 	return t + float64(sines*(1/(2*math.Pi*a0)))
 }

@@ -57,8 +57,8 @@ func CosineHemisphere(u, v float32) geom.Vec3 {
 // hemisphere. Given the versine, narrow cones lose no precision. Density ConePDF(versine) per steradian.
 func Cone(versine, u, v float32) geom.Vec3 {
 	x, y := Disk(u, v)
-	h := float32(versine * (float32(x*x) + float32(y*y))) // 1 - cos θ
-	k := sqrt(versine * (2 - h))                          // sin θ over the disc's radius
+	h := float32(versine * min(1, float32(x*x)+float32(y*y))) // 1 - cos θ
+	k := sqrt(versine * (2 - h))                              // sin θ over the disc's radius
 	return geom.Vec3{X: x * k, Y: y * k, Z: 1 - h}
 }
 
@@ -68,7 +68,7 @@ func ConePDF(versine float32) float32 { return 1 / (2 * math.Pi * versine) }
 // Triangle maps to barycentric weights b0, b1 of the first two corners, b0 + b1 <= 1; density 2 per unit of (b0, b1).
 // Source: Heitz 2019, "A low-distortion map between triangle and square".
 func Triangle(u, v float32) (b0, b1 float32) {
-	b0, b1 = u/2, v/2
+	b0, b1 = float32(u/2), float32(v/2)
 	d := b1 - b0
 	if d > 0 {
 		return b0, b1 + d

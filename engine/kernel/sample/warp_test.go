@@ -138,6 +138,13 @@ func TestWarpDomain(t *testing.T) {
 	})
 }
 
+// TestConeWhole has a point on the disc's rim that rounding put outside it, where the whole sphere is the cone.
+func TestConeWhole(t *testing.T) {
+	if d := Cone(2, 0, 0.0088994205); !d.Finite() || math.Abs(float64(d.Len())-1) > 1e-6 {
+		t.Errorf("direction %v", d)
+	}
+}
+
 // TestNarrowCone checks what the versine is for: a cone of 1e-4 rad keeps its shape in float32.
 func TestNarrowCone(t *testing.T) {
 	const angle = 1e-4

@@ -69,7 +69,8 @@ func TestDeltaE2000Library(t *testing.T) {
 			t.Fatalf("difference from itself %v", s)
 		}
 	})
-	// Colours that both can hold: 8-bit sRGB. The library rounds its matrices to 7 digits.
+	// Colours that both can hold: 8-bit sRGB. The library rounds its white and its
+	// matrices, which turns the hues of near greys.
 	rapid.Check(t, func(t *rapid.T) {
 		channel := rapid.IntRange(0, 255)
 		draw := func(label string) (RGB, colorful.Color) {
@@ -84,10 +85,10 @@ func TestDeltaE2000Library(t *testing.T) {
 		if math.Abs(mine.L-100*l) > 0.01 || math.Abs(mine.A-100*a) > 0.05 || math.Abs(mine.B-100*b) > 0.05 {
 			t.Fatalf("Lab %v, go-colorful has %v, %v, %v", mine, 100*l, 100*a, 100*b)
 		}
-		if math.Abs(math.Abs(ToLab(x).Hue()-ToLab(y).Hue())-180) < 1 {
-			t.Skip("nearly opposite hues")
+		if math.Abs(math.Abs(ToLab(x).Hue()-ToLab(y).Hue())-180) < 1 || min(ToLab(x).Chroma(), ToLab(y).Chroma()) < 1 {
+			t.Skip("nearly opposite hues, or a grey, whose hue is chance: the mean hue differs")
 		}
-		if d, lib := DeltaE2000(ToLab(x), ToLab(y)), 100*lx.DistanceCIEDE2000(ly); math.Abs(d-lib) > 0.03 {
+		if d, lib := DeltaE2000(ToLab(x), ToLab(y)), 100*lx.DistanceCIEDE2000(ly); math.Abs(d-lib) > 0.03+0.003*d {
 			t.Fatalf("difference %v, go-colorful has %v", d, lib)
 		}
 	})

@@ -90,7 +90,7 @@ func TestEncodeAccuracy(t *testing.T) {
 		if x > 0.0031308 {
 			want = 1.055*math.Pow(float64(x), 1/2.4) - 0.055
 		}
-		if got := EncodeSRGB(x); math.Abs(float64(got)-want) > 1.2e-7 {
+		if got := EncodeSRGB(x); math.Abs(float64(got)-want) > 1e-7 {
 			t.Fatalf("EncodeSRGB(%v) = %v, want %v", x, got, want)
 		}
 	})
