@@ -153,7 +153,7 @@ func TestClipEars(t *testing.T) {
 			p = append(p, point2{float64(x - 1), float64(h)})
 			before = h
 		}
-		var c clipper
+		c := clipper{maxTests: maxClipTests}
 		triangles, ok := c.clip(p)
 		if !ok || len(triangles) != len(p)-2 {
 			rt.Fatalf("%d triangles of a polygon of %d corners, simple: %v", len(triangles), len(p), ok)
@@ -172,19 +172,27 @@ func TestClipEars(t *testing.T) {
 	})
 }
 
-// TestClipBadPolygon checks that a polygon that crosses itself ends too, with as many triangles.
+// TestClipBadPolygon checks that polygons that cross themselves end too, within the bound on the work, with as many triangles.
 func TestClipBadPolygon(t *testing.T) {
-	var p []point2
-	for i := range 501 { // a star whose edges all cross
+	var star, zigzag []point2
+	for i := range 501 { // edges that all cross
 		s, c := math.Sincos(2 * math.Pi * float64(i*250) / 501)
-		p = append(p, point2{c, s})
+		star = append(star, point2{c, s})
 	}
-	p[7], p[300] = p[300], p[7]
-	c := clipper{maxTests: 10_000}
-	if triangles, _ := c.clip(p); len(triangles) != len(p)-2 {
-		t.Errorf("%d triangles, want %d", len(triangles), len(p)-2)
+	star[7], star[300] = star[300], star[7]
+	for i := range 20_000 { // every corner reflex or in the way of another
+		zigzag = append(zigzag, point2{float64(i * 7919 % 20_000), float64(i * 104729 % 20_011)})
 	}
-	if c.tests > 3*len(p)*len(p) {
-		t.Errorf("%d corners looked at", c.tests)
+	for _, p := range [][]point2{star, zigzag} {
+		for _, most := range []int{1, 10_000, 1_000_000} {
+			c := clipper{maxTests: most}
+			triangles, _ := c.clip(p)
+			if len(triangles) != len(p)-2 {
+				t.Errorf("%d triangles of %d corners", len(triangles), len(p))
+			}
+			if c.tests > most+5*len(p) {
+				t.Errorf("%d corners looked at, with a bound of %d", c.tests, most)
+			}
+		}
 	}
 }

@@ -66,6 +66,7 @@ func cleanProfile(profile [][2]float64) ([][2]float64, error) {
 	}
 	var points [][2]float64
 	for i, p := range profile {
+		p = [2]float64{float64(float32(p[0])), float64(float32(p[1]))} // what is one to the mesh is one here
 		if math.Abs(p[0]) <= widest*onAxis {
 			p[0] = 0
 		}

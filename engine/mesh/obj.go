@@ -25,7 +25,7 @@ func readOBJ(data []byte, m model.Mesh, read Reader) (*Mesh, error) {
 		return nil, err
 	}
 	o := objReader{
-		model: m, read: read, libraries: newLibraries(m.File, read), described: map[string]model.Material{},
+		model: m, libraries: newLibraries(m.File, read), described: map[string]model.Material{},
 		slotOf: map[string]uint16{}, slotNow: -1, out: &Mesh{},
 	}
 	for {
@@ -50,7 +50,6 @@ func readOBJ(data []byte, m model.Mesh, read Reader) (*Mesh, error) {
 // objReader holds what has been read so far.
 type objReader struct {
 	model     model.Mesh
-	read      Reader
 	libraries *libraries
 	described map[string]model.Material
 	line      int
@@ -60,7 +59,8 @@ type objReader struct {
 	normals   []geom.Vec3 // unit; zero where the file gives a zero vector
 	ahead     [3]reference
 
-	corners     welder // distinct corners: 1 + index of position, texture coordinate (0 none) and normal (0 none)
+	corners     welder   // distinct corners: 1 + index of position, texture coordinate (0 none) and normal (0 none)
+	recent      []uint32 // by position: 1 + the number of the corner that named it last; 0 none
 	face        []uint32
 	polygons    []polygon
 	polyCorners []uint32 // of the polygons, one after the other
@@ -242,8 +242,8 @@ func (o *objReader) addFace(rest []byte) error {
 			return fmt.Errorf("f: corner %s: every corner of a face must have the same form, v, v/vt, v//vn or v/vt/vn", quote(word))
 		}
 		form = has
-		id, fresh := o.corners.id(key)
-		if fresh && id >= 3*MaxTriangles {
+		id := o.cornerID(key)
+		if id >= 3*MaxTriangles {
 			return fmt.Errorf("f: more than %d different corners", 3*MaxTriangles)
 		}
 		o.face = append(o.face, id)
@@ -269,6 +269,23 @@ func (o *objReader) addFace(rest []byte) error {
 		o.out.Triangles = append(o.out.Triangles, [3]uint32{})
 	}
 	return nil
+}
+
+// cornerID numbers the distinct corners. Most faces name a position as the face before did, which needs no look into the table.
+func (o *objReader) cornerID(key [3]uint32) uint32 {
+	for len(o.recent) < len(o.positions) {
+		o.recent = append(o.recent, 0)
+	}
+	if int(key[0]) > len(o.recent) {
+		id, _ := o.corners.id(key)
+		return id
+	}
+	recent := &o.recent[key[0]-1]
+	if *recent == 0 || o.corners.keys[*recent-1] != key {
+		id, _ := o.corners.id(key)
+		*recent = id + 1
+	}
+	return *recent - 1
 }
 
 // beginRun notes the slot and the smoothing group of the triangles from first on.

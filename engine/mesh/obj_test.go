@@ -114,7 +114,7 @@ func TestOBJWelding(t *testing.T) {
 func TestOBJPolygons(t *testing.T) {
 	for name, outline := range map[string][][2]float64{
 		"arrow": {{0, 0}, {2, 1}, {0, 2}, {0.5, 1}}, "arrow from its tail": {{0.5, 1}, {0, 0}, {2, 1}, {0, 2}},
-		"comb": comb(12), "spiral": spiral(100), "with points on edges": {{0, 0}, {1, 0}, {2, 0}, {2, 1}, {1, 1}, {0, 1}},
+		"hole by a bridge": {{0, 0}, {4, 0}, {4, 4}, {0, 4}, {0, 0}, {1, 1}, {1, 3}, {3, 3}, {3, 1}, {1, 1}}, "comb": comb(12), "spiral": spiral(100), "with points on edges": {{0, 0}, {1, 0}, {2, 0}, {2, 1}, {1, 1}, {0, 1}},
 	} {
 		area, _ := shoelace(outline)
 		sign := 1.0

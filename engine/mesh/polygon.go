@@ -27,11 +27,11 @@ type clipper struct {
 	ears       []int32 // corners that were ears when last looked at, first in, first out
 	out        [][3]int32
 	tests      int // corners looked at so far, over all polygons: the measure of the work done
-	maxTests   int // no more looking beyond this many; 0 means no bound
+	maxTests   int // clip gives up when it has looked at more, > 0
 }
 
 // clip returns n - 2 triangles of corner indices for a counter-clockwise polygon of n >= 3 corners. ok is false if the polygon
-// was not simple, or maxTests was reached: the triangles then have the right corners and sum of signed areas but may overlap.
+// was not simple, or maxTests was passed: the triangles then have the right corners and sum of signed areas but may overlap.
 // The result is valid until the next call. Usual cost: corners times reflex corners.
 func (c *clipper) clip(p []point2) (triangles [][3]int32, ok bool) {
 	n := len(p)
@@ -49,6 +49,9 @@ func (c *clipper) clip(p []point2) (triangles [][3]int32, ok bool) {
 	ok = true
 	last, first := int32(0), 0
 	for left := n; left > 3; left-- {
+		if c.spent() {
+			return c.fan(last), false
+		}
 		tip := int32(-1)
 		for tip < 0 && first < len(c.ears) {
 			if i := c.ears[first]; c.next[i] >= 0 && c.ear(p, i) {
@@ -80,13 +83,24 @@ func (c *clipper) clip(p []point2) (triangles [][3]int32, ok bool) {
 	return c.out, ok
 }
 
+// spent reports whether the bound on the work is passed.
+func (c *clipper) spent() bool { return c.tests > c.maxTests }
+
+// fan cuts what is left from one corner, ear or not.
+func (c *clipper) fan(from int32) [][3]int32 {
+	for b := c.next[from]; c.next[b] != from; b = c.next[b] {
+		c.out = append(c.out, [3]int32{from, b, c.next[b]})
+	}
+	return c.out
+}
+
 // findEars looks at every corner that is left, from corner from on.
 func (c *clipper) findEars(p []point2, from int32) {
 	for i := from; ; {
 		if c.ear(p, i) {
 			c.ears = append(c.ears, i)
 		}
-		if i = c.next[i]; i == from {
+		if i = c.next[i]; i == from || c.spent() {
 			return
 		}
 	}
@@ -106,11 +120,12 @@ func (c *clipper) pruneReflex(p []point2) {
 
 // ear reports whether the triangle of corner tip and its neighbours has an area and holds no other corner, its edges included.
 func (c *clipper) ear(p []point2, tip int32) bool {
+	c.tests++
 	pa, pt, pb := p[c.prev[tip]], p[tip], p[c.next[tip]]
-	if !(orient(pa, pt, pb) > 0) || c.maxTests > 0 && c.tests > c.maxTests {
+	if !(orient(pa, pt, pb) > 0) {
 		return false
 	}
-	c.tests += len(c.reflex) + 1
+	c.tests += len(c.reflex)
 	for _, i := range c.reflex {
 		q := p[i]
 		if q != pa && q != pb && q != pt && orient(pa, pt, q) >= 0 && orient(pt, pb, q) >= 0 && orient(pb, pa, q) >= 0 {

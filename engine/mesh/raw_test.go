@@ -28,6 +28,18 @@ func TestRaw(t *testing.T) {
 	}
 }
 
+// TestRawOctahedron checks the closed form of SHAPE-octa-a1: volume √2/3, area 2√3 for an edge of 1.
+func TestRawOctahedron(t *testing.T) {
+	r := &model.RawMesh{Triangles: [][3]uint32{{0, 1, 4}, {1, 2, 4}, {2, 3, 4}, {3, 0, 4}, {1, 0, 5}, {2, 1, 5}, {3, 2, 5}, {0, 3, 5}}}
+	h := math.Sqrt2 / 2
+	r.Positions = [][3]float64{{h, 0, 0}, {0, 0, -h}, {-h, 0, 0}, {0, 0, h}, {0, h, 0}, {0, -h, 0}}
+	m := built(t, model.Mesh{Kind: model.MeshRaw, Raw: r})
+	checkClosed(t, m, 2)
+	if v, a := volumeOf(m), areaOf(m); !near(v, 0.4714045208, 1e-7) || !near(a, 3.464101615, 1e-7) {
+		t.Errorf("volume %v, area %v, want 0.4714045208, 3.464101615 (SHAPE-octa-a1)", v, a)
+	}
+}
+
 // TestSmooth checks the angle: a cube's faces meet at 90 degrees.
 func TestSmooth(t *testing.T) {
 	for _, c := range []struct {

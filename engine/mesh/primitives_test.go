@@ -66,6 +66,23 @@ func TestShapes(t *testing.T) {
 	}
 }
 
+// TestFewSegments checks that the coarsest forms are closed too.
+func TestFewSegments(t *testing.T) {
+	for _, n := range []int{3, 4, 5, 7} {
+		for _, m := range []model.Mesh{
+			{Kind: model.MeshSphere, Size: [3]float64{1}}, {Kind: model.MeshCylinder, Size: [3]float64{1, 1}}, {Kind: model.MeshTestForm},
+			{Kind: model.MeshCone, Size: [3]float64{1, 0, 1}}, {Kind: model.MeshLathe, Profile: bowl, Crease: 30}, {Kind: model.MeshTorus, Size: [3]float64{2, 1}},
+		} {
+			m.Segments = n
+			euler := 2
+			if m.Kind == model.MeshTorus {
+				euler = 0
+			}
+			checkClosed(t, built(t, m), euler)
+		}
+	}
+}
+
 // TestFlatShapes checks the forms that are exact.
 func TestFlatShapes(t *testing.T) {
 	box := built(t, model.Mesh{Kind: model.MeshBox, Size: [3]float64{1, 2, 3}})
