@@ -15,6 +15,7 @@ const (
 	minTileSide = 16     // of a sheet's own Tile
 	maxTileSide = 4_096
 	minModule   = 12
+	footRoom    = 8  // modules kept for the foot, enough for ten lines, when a table is cut
 	minMeasure  = 20 // modules: the narrowest column of tiles, so that title and foot have room
 )
 

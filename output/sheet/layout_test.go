@@ -235,6 +235,15 @@ func TestPageNames(t *testing.T) {
 			t.Errorf("%q is no file's name", n)
 		}
 	}
+	long := Options{Foot{PlanHash: "3fa0b1c2d9", Stamp: strings.Repeat("a build ", 60), Lines: []string{"one", "two", "three"}}}
+	for rows := 54; rows < 64; rows++ {
+		p, s := many(rows, 1, 480, 240), model.Sheet{Name: "s", Rows: []string{"row"}, Columns: []string{"column"}, Tile: [2]int{400, 200}}
+		with, err := Names(p, s, long)
+		without, err2 := Names(p, s, Options{})
+		if err != nil || err2 != nil || !slices.Equal(with, without) {
+			t.Errorf("%d rows: pages %q with a long foot, %q without (%v, %v)", rows, with, without, err, err2)
+		}
+	}
 	minus, err := Names(many(1, 1, 8, 8), model.Sheet{Name: "s", Pages: []string{"row", "column"}}, Options{})
 	if err != nil || !slices.Equal(minus, []string{"s-0-0"}) {
 		t.Errorf("got %q, %v", minus, err)

@@ -64,7 +64,7 @@ func Lay(p *model.Plan, s model.Sheet, src Source, o Options, emit func(Page) er
 	return nil
 }
 
-// Names returns the names of a sheet's pages without drawing them.
+// Names returns the names of a sheet's pages without drawing them. They do not depend on the foot.
 func Names(p *model.Plan, s model.Sheet, o Options) ([]string, error) {
 	pages, _, err := plates(p, &s, o)
 	if err != nil {
@@ -150,9 +150,13 @@ func filling(size, box image.Point) float64 {
 // cutToFit returns the parts of a table that fit a page each. It makes the composer's cell smaller first, unless the sheet has
 // its own Tile or tiles would become too small to judge.
 func (c *composer) cutToFit(t *table) []part {
+	// The foot counts as footRoom, not as what it says: the cut, and so the pages' names, must not hang on a stamp.
+	foot := c.foot
+	c.foot = nil
+	defer func() { c.foot = foot }()
 	fits := func(p part) bool {
 		pl := c.compose(p)
-		return pl.width <= maxSide && pl.height <= maxSide
+		return pl.width <= maxSide && float64(pl.height)+footRoom*pl.module <= maxSide
 	}
 	if c.mayFit(t, c.cell) {
 		if whole := c.wholeTable(t); fits(whole) {
