@@ -211,6 +211,24 @@ func TestAwkwardPlaces(t *testing.T) {
 	}
 }
 
+// TestNotFinite: a point that is not in space receives nothing, whatever the lamp, and no NaN.
+func TestNotFinite(t *testing.T) {
+	inf, nan := float32(math.Inf(1)), float32(math.NaN())
+	for _, k := range kinds[1:] {
+		l := New(Spec{Kind: k.kind, Position: v3{Y: 2}, Direction: v3{X: 1, Y: -2, Z: 3}, Width: 1, Height: 1, Radius: 1, Outer: 80, TwoSided: true})
+		for _, p := range []geom.Vec3{{X: nan}, {Y: nan}, {Z: inf}, {Y: -inf}, {X: inf, Y: inf, Z: -inf}} {
+			var q Prepared
+			l.Prepare(p, &q)
+			if _, _, w := q.Sample(0.3, 0.6); w != 0 {
+				t.Errorf("%s at %v: weight %v", k.name, p, w)
+			}
+			if e := l.Irradiance(p.Wide(), up); e != 0 {
+				t.Errorf("%s at %v: irradiance %v", k.name, p, e)
+			}
+		}
+	}
+}
+
 // TestFarPrecision: a lamp of half a metre at a kilometre must have its inverse square to the digits of float32.
 func TestFarPrecision(t *testing.T) {
 	for _, s := range []Spec{

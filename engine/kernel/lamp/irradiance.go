@@ -25,8 +25,7 @@ func (l *Lamp) Irradiance(pWorld, n geom.Vec3d) float64 {
 	case Sphere:
 		return sphereIrradiance(d, n, l.Radius)
 	}
-	h := d.Dot(l.Axis)
-	if h == 0 || h > 0 && !l.twoSided {
+	if _, ok := l.emittingSide(d); !ok {
 		return 0
 	}
 	if l.Kind == Disk {
@@ -133,7 +132,7 @@ func (l *Lamp) diskIrradiance(d, n geom.Vec3d) float64 {
 // Source: Howell, "A catalog of radiation heat transfer configuration factors", element to sphere.
 func sphereIrradiance(d, n geom.Vec3d, r float64) float64 {
 	far := d.Len()
-	if far <= r {
+	if !(far > r && far <= math.MaxFloat64) {
 		return 0
 	}
 	h, cos := far/r, n.Dot(d)/far

@@ -91,7 +91,7 @@ func (l *Lamp) preparePunctual(p geom.Vec3d, q *Prepared) {
 // Source: KHR_lights_punctual, "Range Property" and "Inner and Outer Cone Angles".
 func (l *Lamp) punctual(d geom.Vec3d) float64 {
 	d2 := d.Dot(d)
-	if !(d2 > tooNear*tooNear) {
+	if !(d2 > tooNear*tooNear && d2 <= math.MaxFloat64) {
 		return 0
 	}
 	e := 1.0
@@ -109,13 +109,20 @@ func (l *Lamp) punctual(d geom.Vec3d) float64 {
 	return e
 }
 
+// emittingSide returns the component of d, the vector to a flat lamp, along the lamp's axis: negative in front. ok is
+// false on the plane, on a side that does not emit, and for a d that is not finite.
+func (l *Lamp) emittingSide(d geom.Vec3d) (h float64, ok bool) {
+	h = d.Dot(l.Axis)
+	return h, h < 0 && h >= -math.MaxFloat64 || h > 0 && h <= math.MaxFloat64 && l.twoSided
+}
+
 // prepareRectangle follows Ureña, Fajardo & King 2013, "An area-preserving parametrization for spherical rectangles",
 // in float64: the angles of a distant rectangle differ in their tenth decimal. Where even that is too little, the
 // rectangle is so small that sampling it by area is as good.
 func (l *Lamp) prepareRectangle(p geom.Vec3d, q *Prepared) {
 	d := l.Position.Sub(p)
-	h := d.Dot(l.Axis)
-	if h == 0 || h > 0 && !l.twoSided {
+	h, ok := l.emittingSide(d)
+	if !ok {
 		return
 	}
 	r := &q.rect
@@ -159,8 +166,8 @@ const smallAngle = 1e-6
 // the point, the centre and the normal holds its pole, which halves the angle between the two rim points there.
 func (l *Lamp) prepareDisk(p geom.Vec3d, q *Prepared) {
 	d := l.Position.Sub(p)
-	h := d.Dot(l.Axis)
-	if h == 0 || h > 0 && !l.twoSided {
+	h, ok := l.emittingSide(d)
+	if !ok {
 		return
 	}
 	c := &q.cone
@@ -222,7 +229,7 @@ func versine(i float64) float64 {
 func (l *Lamp) prepareSphere(p geom.Vec3d, q *Prepared) {
 	d := l.Position.Sub(p)
 	far := d.Len()
-	if !(far > l.Radius) {
+	if !(far > l.Radius && far <= math.MaxFloat64) {
 		return
 	}
 	sin := l.Radius / far
