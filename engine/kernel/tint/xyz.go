@@ -1,6 +1,10 @@
 package tint
 
-import "math"
+import (
+	"math"
+
+	"lampbook/engine/kernel/num"
+)
 
 // XYZ holds CIE 1931 tristimulus values, Y = 1 for white.
 type XYZ struct{ X, Y, Z float64 }
@@ -122,6 +126,6 @@ func hue(a, b float64) float64 {
 
 // FromLCh returns the Lab colour of lightness, chroma and hue in degrees.
 func FromLCh(l, chroma, hueDeg float64) Lab {
-	sin, cos := math.Sincos(hueDeg * math.Pi / 180)
+	sin, cos := num.SinCosWide(hueDeg * math.Pi / 180)
 	return Lab{L: l, A: chroma * cos, B: chroma * sin}
 }
