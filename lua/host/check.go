@@ -141,6 +141,11 @@ func (c *checker) statement(s ast.Stmt) {
 			c.notes.add(s.Line(), note{kind: noteEach, names: []string{describe(s.Exprs[0])}})
 		}
 		c.exprs(s.Exprs)
+		// The script library clears only as many of the three values behind a loop (iterator, state, control) as the loop has names,
+		// and finds the others as an earlier loop left them: a second loop over the same iterator would not run.
+		for len(s.Names) < 3 {
+			s.Names = append(s.Names, unnamed)
+		}
 		mark := len(c.names)
 		c.declare(s.Line(), s.Names...)
 		c.block(s.Stmts)
@@ -171,6 +176,9 @@ func (c *checker) exprs(list []ast.Expr) {
 		list[i] = c.expr(list[i])
 	}
 }
+
+// unnamed is a loop variable that no Lua name can reach.
+const unnamed = "(unnamed)"
 
 // expr walks an expression and returns what stands in its place.
 func (c *checker) expr(e ast.Expr) ast.Expr {
