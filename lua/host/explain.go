@@ -43,9 +43,9 @@ func (s *sandbox) explain(l *lua.LState, msg string) string {
 	case rest == "attempt to call a non-function object":
 		text = v.callFault(on)
 	case rest == "__unm undefined":
-		text = v.unaryFault(on, noteMinus, "cannot be negated")
+		text = v.unaryFault(on, noteMinus, "no number", "cannot be negated")
 	case rest == "__len undefined":
-		text = v.unaryFault(on, noteLen, "has no length")
+		text = v.unaryFault(on, noteLen, "no table and no text", "has no length")
 	case rest == "table index is nil":
 		text = "a table key is nil"
 	case rest == "table index is NaN":
@@ -106,7 +106,8 @@ func viewOf(l *lua.LState, s *sandbox) view {
 	return v
 }
 
-// variable returns the value of a name in the function; ok is false where it cannot be seen.
+// variable returns the value of a name in the function; ok is false where it cannot be seen. The library shows a local only from the
+// second instruction after its declaration on.
 func (v view) variable(name string) (found lua.LValue, ok bool) {
 	if v.fn == nil {
 		return nil, false
@@ -268,7 +269,7 @@ func (v view) callFault(on []note) string {
 	return fmt.Sprintf("%s is no function and cannot be called", either(found, "a value on this line"))
 }
 
-func (v view) unaryFault(on []note, what noteKind, cannot string) string {
+func (v view) unaryFault(on []note, what noteKind, is, cannot string) string {
 	var names []string
 	for _, n := range on {
 		if n.kind == what {
@@ -282,7 +283,7 @@ func (v view) unaryFault(on []note, what noteKind, cannot string) string {
 			return fmt.Sprintf("'%s' is %s and %s%s", found[0], article(kind(value)), cannot, v.near(found))
 		}
 	}
-	return fmt.Sprintf("%s %s", either(found, "a value on this line"), cannot)
+	return fmt.Sprintf("%s is %s and %s", either(found, "a value on this line"), is, cannot)
 }
 
 // pairFault is a binary operation on values of the two kinds.

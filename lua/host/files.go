@@ -112,7 +112,7 @@ func (f *Files) Read(file string) ([]byte, error) {
 		return nil, f.complain(file, err)
 	}
 	if int64(len(text)) > f.most {
-		return nil, fmt.Errorf("%s: the file is larger than %d MiB", short(plain(file)), f.most>>20)
+		return nil, fmt.Errorf("%s: the file is larger than %s bytes", plain(file), grouped(f.most))
 	}
 	return text, nil
 }

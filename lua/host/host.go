@@ -172,7 +172,11 @@ func (s *sandbox) finish(env *bind.Env) (plan *model.Plan, err error) {
 		return nil, s.meter.stopped
 	}
 	if err != nil {
-		return nil, asError(err)
+		e := asError(err)
+		if e.Pos.File == "" {
+			e.Pos.File, e.Msg = env.Scene, strings.TrimPrefix(e.Msg, env.Scene+": ")
+		}
+		return nil, e
 	}
 	return plan, nil
 }

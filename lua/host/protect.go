@@ -21,10 +21,10 @@ func (s *sandbox) protect(l *lua.LState, f lua.LValue, arguments []lua.LValue) (
 		s.raise(l, "pcall is nested more than %d deep", maxProtected)
 	}
 	th = s.thread(depth)
-	at := s.position(0)
+	at, loading := s.position(0), len(s.loading)
 	s.running = append(s.running, th)
 	err := s.call(th, s.relay(at), append([]lua.LValue{f}, arguments...))
-	s.running = s.running[:depth]
+	s.running, s.loading = s.running[:depth], s.loading[:loading]
 	if s.fatal != nil && s.meter.stopped == nil {
 		if bug := s.fatal(); bug != nil {
 			s.meter.stop(firstLine(bug.Error()), bug)

@@ -29,6 +29,9 @@ func syntaxError(name string, text []byte, fault *parse.Error) *Error {
 	quoted := quote(fault.Token)
 	switch msg := strings.ToLower(fault.Message); {
 	case strings.Contains(msg, "unterminated string"):
+		if fault.Pos.Line != parse.EOF {
+			e.Pos.Line-- // the scanner has read the line break
+		}
 		e.Msg = fmt.Sprintf("the text that begins with %s has no closing quote on its line", quoted)
 	case strings.Contains(msg, "unterminated multiline string"), strings.Contains(msg, "invalid multiline comment"):
 		e.Msg = "a long text or comment that begins with [[ has no closing ]]"
@@ -51,7 +54,7 @@ func syntaxError(name string, text []byte, fault *parse.Error) *Error {
 		case fault.Pos.Line == parse.EOF:
 			e.Msg = "the file ends in the middle of a statement"
 		default:
-			e.Msg = fmt.Sprintf("unexpected %s%s", quoted, advice(tokens, fault.Token, line))
+			e.Msg = fmt.Sprintf("unexpected %s%s", quoted, advice(tokens, fault.Token, line, fault.Pos.Column))
 		}
 	}
 	return e
@@ -88,8 +91,8 @@ func strange(token string) string {
 
 // token is a word of the source with its line.
 type token struct {
-	text string
-	line int
+	text         string
+	line, column int
 }
 
 // unfinished scans the text as far as it can and returns the openers that no closer followed, outermost first, and the words.
@@ -102,10 +105,10 @@ func unfinished(text []byte) (open []opener, words []token) {
 		}
 		lx.PrevTokenType = t.Type
 		if t.Type == parse.TString {
-			words = append(words, token{"\x00text", t.Pos.Line})
+			words = append(words, token{"\x00text", t.Pos.Line, t.Pos.Column})
 			continue
 		}
-		words = append(words, token{t.Str, t.Pos.Line})
+		words = append(words, token{t.Str, t.Pos.Line, t.Pos.Column})
 		if _, ok := closers[t.Str]; ok {
 			if t.Str == "then" && len(words) > 1 && elseif(words) {
 				continue
@@ -133,26 +136,29 @@ func elseif(words []token) bool {
 }
 
 // advice guesses what led to an unexpected word: the commonest slips of people who come from other languages.
-func advice(words []token, unexpected string, line int) string {
+func advice(words []token, unexpected string, line, column int) string {
 	at := -1
 	for i, w := range words {
-		if w.line <= line && w.text == unexpected {
+		if (w.line < line || w.line == line && w.column <= column) && w.text == unexpected {
 			at = i
 		}
 	}
-	before := ""
+	before, after := "", ""
 	if at > 0 {
 		before = words[at-1].text
 	}
+	if at >= 0 && at+1 < len(words) {
+		after = words[at+1].text
+	}
 	switch {
+	case after == "=" && strings.Contains(" + - * / .. ", " "+unexpected+" "):
+		return fmt.Sprintf(": write x = x %s … in full", unexpected)
+	case (unexpected == "+" || unexpected == "-") && after == unexpected:
+		return ": write x = x + 1 in full"
 	case unexpected == "=" && before == "!":
 		return ": 'not equal' is written ~="
-	case unexpected == "=" && (before == "+" || before == "-" || before == "*" || before == "/" || before == ".."):
-		return fmt.Sprintf(": write x = x %s … in full", before)
 	case unexpected == "=" && at >= 0 && inCondition(words, at):
 		return ": 'equal' is written =="
-	case (unexpected == "+" || unexpected == "-") && before == unexpected:
-		return ": write x = x + 1 in full"
 	case unexpected == "else" && before == "end":
 		return ": no 'end' stands before 'else'"
 	case unexpected == "if" && before == "else":
