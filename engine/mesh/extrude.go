@@ -108,11 +108,7 @@ func addSides(out *Mesh, outline []point2, z float32) {
 
 // addEnds adds the two flat ends, at z and -z. It reports whether they could be cut into triangles.
 func addEnds(out *Mesh, outline []point2, z float32) bool {
-	lo, hi := outline[0], outline[0]
-	for _, p := range outline {
-		lo = point2{min(lo.x, p.x), min(lo.y, p.y)}
-		hi = point2{max(hi.x, p.x), max(hi.y, p.y)}
-	}
+	lo, hi := bounds2(outline)
 	c := clipper{maxTests: maxClipTests}
 	triangles, ok := c.clip(outline)
 	for _, side := range [2]float32{1, -1} {

@@ -1,6 +1,10 @@
 package mesh
 
-import "fmt"
+import (
+	"cmp"
+	"fmt"
+	"slices"
+)
 
 // point2 is a point in the plane of a polygon.
 type point2 struct{ x, y float64 }
@@ -20,10 +24,23 @@ func polygonArea(p []point2) float64 {
 	return sum / 2
 }
 
+// bounds2 returns the corners of the smallest rectangle around p.
+func bounds2(p []point2) (lo, hi point2) {
+	lo, hi = p[0], p[0]
+	for _, q := range p {
+		lo = point2{min(lo.x, q.x), min(lo.y, q.y)}
+		hi = point2{max(hi.x, q.x), max(hi.y, q.y)}
+	}
+	return lo, hi
+}
+
 // clipper cuts polygons into triangles by clipping ears (Meisters 1975). It may be used again for the next polygon.
 type clipper struct {
 	next, prev []int32 // neighbours among the corners that are left; next is -1 for a clipped corner
-	reflex     []int32 // corners that may lie inside an ear
+	reflex     []bool  // whether a corner is left and not convex: such corners may lie inside an ear
+	sorted     []int32 // the reflex corners along the polygon's longer side, with some that are reflex no more
+	gone       int     // how many of sorted are reflex no more
+	tall       bool    // the longer side is that of y
 	ears       []int32 // corners that were ears when last looked at, first in, first out
 	out        [][3]int32
 	tests      int // corners looked at so far, over all polygons: the measure of the work done
@@ -32,19 +49,24 @@ type clipper struct {
 
 // clip returns n - 2 triangles of corner indices for a counter-clockwise polygon of n >= 3 corners. ok is false if the polygon
 // was not simple, or maxTests was passed: the triangles then have the right corners and sum of signed areas but may overlap.
-// The result is valid until the next call. Usual cost: corners times reflex corners.
+// The result is valid until the next call. Cost: corners times the reflex corners beside an ear.
 func (c *clipper) clip(p []point2) (triangles [][3]int32, ok bool) {
 	n := len(p)
-	c.next, c.prev, c.reflex, c.ears, c.out = c.next[:0], c.prev[:0], c.reflex[:0], c.ears[:0], c.out[:0]
+	c.next, c.prev, c.reflex, c.sorted, c.ears, c.out = c.next[:0], c.prev[:0], c.reflex[:0], c.sorted[:0], c.ears[:0], c.out[:0]
+	c.gone = 0
 	for i := range n {
 		c.next = append(c.next, int32((i+1)%n))
 		c.prev = append(c.prev, int32((i+n-1)%n))
 	}
 	for i := range n {
-		if orient(p[c.prev[i]], p[i], p[c.next[i]]) <= 0 {
-			c.reflex = append(c.reflex, int32(i))
+		c.reflex = append(c.reflex, orient(p[c.prev[i]], p[i], p[c.next[i]]) <= 0)
+		if c.reflex[i] {
+			c.sorted = append(c.sorted, int32(i))
 		}
 	}
+	lo, hi := bounds2(p)
+	c.tall = hi.y-lo.y > hi.x-lo.x
+	slices.SortFunc(c.sorted, func(i, j int32) int { return cmp.Compare(c.along(p[i]), c.along(p[j])) })
 	c.findEars(p, 0)
 	ok = true
 	last, first := int32(0), 0
@@ -72,8 +94,11 @@ func (c *clipper) clip(p []point2) (triangles [][3]int32, ok bool) {
 		c.out = append(c.out, [3]int32{a, tip, b})
 		c.next[a], c.prev[b], c.next[tip] = b, a, -1
 		last = b
-		c.pruneReflex(p)
+		c.drop(tip)
 		for _, i := range [2]int32{a, b} {
+			if orient(p[c.prev[i]], p[i], p[c.next[i]]) > 0 {
+				c.drop(i) // a corner never becomes reflex again
+			}
 			if c.ear(p, i) {
 				c.ears = append(c.ears, i)
 			}
@@ -81,6 +106,14 @@ func (c *clipper) clip(p []point2) (triangles [][3]int32, ok bool) {
 	}
 	c.out = append(c.out, [3]int32{c.prev[last], last, c.next[last]})
 	return c.out, ok
+}
+
+// along is the coordinate on the longer side.
+func (c *clipper) along(q point2) float64 {
+	if c.tall {
+		return q.y
+	}
+	return q.x
 }
 
 // spent reports whether the bound on the work is passed.
@@ -106,16 +139,16 @@ func (c *clipper) findEars(p []point2, from int32) {
 	}
 }
 
-// pruneReflex drops the corners that are clipped or convex by now; a corner never becomes reflex again.
-func (c *clipper) pruneReflex(p []point2) {
-	c.tests += len(c.reflex)
-	kept := c.reflex[:0]
-	for _, i := range c.reflex {
-		if c.next[i] >= 0 && orient(p[c.prev[i]], p[i], p[c.next[i]]) <= 0 {
-			kept = append(kept, i)
-		}
+// drop takes a corner out of the reflex ones; the list is cleared of such corners when half of it are.
+func (c *clipper) drop(i int32) {
+	if !c.reflex[i] {
+		return
 	}
-	c.reflex = kept
+	c.reflex[i] = false
+	if c.gone++; 2*c.gone > len(c.sorted) {
+		c.sorted = slices.DeleteFunc(c.sorted, func(i int32) bool { return !c.reflex[i] })
+		c.gone = 0
+	}
 }
 
 // ear reports whether the triangle of corner tip and its neighbours has an area and holds no other corner, its edges included.
@@ -125,10 +158,16 @@ func (c *clipper) ear(p []point2, tip int32) bool {
 	if !(orient(pa, pt, pb) > 0) {
 		return false
 	}
-	c.tests += len(c.reflex)
-	for _, i := range c.reflex {
+	lo := min(c.along(pa), c.along(pt), c.along(pb))
+	hi := max(c.along(pa), c.along(pt), c.along(pb))
+	first, _ := slices.BinarySearchFunc(c.sorted, lo, func(i int32, at float64) int { return cmp.Compare(c.along(p[i]), at) })
+	for _, i := range c.sorted[first:] {
 		q := p[i]
-		if q != pa && q != pb && q != pt && orient(pa, pt, q) >= 0 && orient(pt, pb, q) >= 0 && orient(pb, pa, q) >= 0 {
+		if c.along(q) > hi {
+			break
+		}
+		c.tests++
+		if c.reflex[i] && q != pa && q != pb && q != pt && orient(pa, pt, q) >= 0 && orient(pt, pb, q) >= 0 && orient(pb, pa, q) >= 0 {
 			return false
 		}
 	}
