@@ -51,15 +51,17 @@ type Env struct {
 	materials map[model.Material]model.MaterialID
 	lights    map[model.Light]model.LightID
 	meshes    map[model.Hash]model.MeshID
-	params    map[string]int         // index into plan.Params
-	names     map[string]int         // frame by lower-case name
-	sheets    map[string]bool        // sheet names, lower case
-	fits      map[string]fitted      // cameras that fit things, by what was asked
-	stages    map[string]*stage      // the room that things take, by things
-	metered   *float64               // exposure of the first frame that stated none
-	paramPos  []model.Pos            // by index into plan.Params
-	passes    bool                   // a frame asks for passes
-	forms     int                    // meshes that were given a serial number
+	params    map[string]int    // index into plan.Params
+	names     map[string]int    // frame by lower-case name
+	sheets    map[string]bool   // sheet names, lower case
+	fits      map[string]fitted // cameras that fit things, by what was asked
+	stages    map[string]*stage // the room that things take, by things
+	metered   *float64          // exposure of the first frame that stated none
+	paramPos  []model.Pos       // by index into plan.Params
+	passes    bool              // a frame asks for passes
+	forms     int               // meshes that were given a serial number
+	hashes    map[string]hashed // of mesh files, by file
+	warned    map[model.Warning]bool
 	metas     map[string]*lua.LTable // metatables by kind of value
 	fatal     error
 }
@@ -91,13 +93,23 @@ func (e *Env) start() {
 	e.sheets = map[string]bool{}
 	e.fits = map[string]fitted{}
 	e.stages = map[string]*stage{}
+	e.hashes = map[string]hashed{}
+	e.warned = map[model.Warning]bool{}
 	e.metered, e.paramPos, e.passes, e.fatal = nil, nil, false, nil
 	e.metas = map[string]*lua.LTable{}
 }
 
-// warn adds a remark to the plan.
+// maxWarnings is more than anyone reads.
+const maxWarnings = 1000
+
+// warn adds a remark to the plan, once.
 func (e *Env) warn(pos model.Pos, text string) {
-	e.plan.Warnings = append(e.plan.Warnings, model.Warning{Pos: pos, Text: text})
+	w := model.Warning{Pos: pos, Text: text}
+	if e.warned[w] || len(e.warned) == maxWarnings {
+		return
+	}
+	e.warned[w] = true
+	e.plan.Warnings = append(e.plan.Warnings, w)
 }
 
 // materialID returns the index of the material in the plan, adding it where no equal one stands.

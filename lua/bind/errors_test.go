@@ -81,7 +81,7 @@ var errorTests = []struct{ scene, want string }{
 	{`param("1x", 3)`, `param: name must be letters, digits and _, beginning with a letter, got "1x"`},
 	{`param("x", {})`, `param: the default of "x" must be a number, a text, true or false, or a colour, got {}`},
 	{`param("x", 3, { min = 5 })`, `param: the default of "x": must be at least 5, got 3`},
-	{"param('x', 3)\nparam('x', 4)", `param: "x" is declared already, at scenes/test.lua:1`},
+	{`param("x", 3) param("x", 4)`, `param: "x" is declared already, at scenes/test.lua:1`},
 	{`for s in sweep{ {"gloss", {4, 16}} } do print(s.glos) end`, `this sweep has no "glos"; did you mean "gloss"? accepted: gloss`},
 	{`sweep{ {"gloss", {}} }`, `sweep: axis "gloss" has no values`},
 	{`sweep{ gloss = {4, 16} }`, `sweep: takes a list of axes, got the key "gloss"`},
@@ -119,9 +119,6 @@ func TestErrors(t *testing.T) {
 		e := newEnv()
 		err := run(t, newState(t, e), c.scene)
 		line := "scenes/test.lua:1: "
-		if c.want[:5] == "param" && c.scene[:9] == "param('x'" {
-			line = "scenes/test.lua:2: "
-		}
 		if got := message(err); got != line+c.want {
 			t.Errorf("%s\n got %s\nwant %s", c.scene, got, line+c.want)
 		}

@@ -1,9 +1,7 @@
 package bind
 
 import (
-	"errors"
 	"fmt"
-	"io/fs"
 	"strings"
 
 	lua "github.com/yuin/gopher-lua"
@@ -225,68 +223,6 @@ func (a *args) triangle(n int, v lua.LValue, positions int) (t [3]uint32) {
 		t[i] = uint32(c) - 1
 	}
 	return t
-}
-
-var units = []struct {
-	name   string
-	metres float64
-}{{"m", 1}, {"cm", 0.01}, {"mm", 0.001}, {"inch", 0.0254}, {"foot", 0.3048}}
-
-// fileKeys reads how a file is to be taken.
-func (a *args) fileKeys(f *form) {
-	switch v := a.get("unit").(type) {
-	case *lua.LNilType:
-	case lua.LString:
-		var names []string
-		for _, u := range units {
-			names = append(names, u.name)
-		}
-		f.Unit = units[a.checkWord("unit", v, names)].metres
-	default:
-		f.Unit = a.checkNumber("unit", v, above0(maxLength, "metres to one unit of the file"))
-	}
-	up := 0
-	if a.oneOf("up", []string{"y", "z"}, &up) {
-		f.ZUp = up == 1
-	}
-	a.number("smooth", &f.Smooth, between(0, 180, "degrees"))
-}
-
-// meshLoad reads a mesh file. One that is missing or broken gives a mesh all the same, which fails the frames that show it
-// and no others; the plan warns of it.
-func meshLoad(a *args) lua.LValue {
-	var path string
-	a.text("path", &path)
-	f := defaultForm(model.MeshFile)
-	a.fileKeys(f)
-	a.loadForm(f, path)
-	return a.env.push(a.l, f)
-}
-
-func (a *args) loadForm(f *form, path string) {
-	file, err := a.env.Files.Find(path)
-	if err != nil {
-		if !errors.Is(err, fs.ErrNotExist) {
-			a.failf("%v", err)
-		}
-		a.formFails(f, err)
-		return
-	}
-	f.File = file
-	if f.FileHash, err = mesh.HashFile(file, a.env.Files.Read); err == nil {
-		_, err = a.env.Meshes.Get(f.Mesh)
-	}
-	if err != nil {
-		a.formFails(f, err)
-	}
-}
-
-// formFails marks a mesh as one that did not load.
-func (a *args) formFails(f *form, err error) {
-	pos := a.env.callSite(a.l)
-	f.failure = fmt.Sprintf("%smesh.load: %v", prefix(pos), err)
-	f.FileHash = ""
-	a.env.warn(pos, fmt.Sprintf("mesh.load: %v", err))
 }
 
 func meshWith(a *args) lua.LValue {
