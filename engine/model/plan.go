@@ -63,7 +63,7 @@ const (
 	TruthValue
 )
 
-// Frame is everything needed to make one picture. Equal frames, apart from Name, Tags, Pos, Caption and Failure, give equal bytes.
+// Frame is everything needed to make one picture. Equal frames, apart from Name, Tags and Pos, give equal bytes.
 type Frame struct {
 	Name     string // unique in the plan, letters, digits, '.', '_', '-'; the file's name; not hashed
 	Tags     []Tag  // in the scene's order; not hashed

@@ -1,15 +1,21 @@
 package model
 
 import (
+	"math"
 	"slices"
 	"strconv"
 )
 
-// String returns the value as text: a number in the fewest digits that read back the same, a truth value as "true" or "false".
+// String returns the value as text: a number in the fewest digits that read back the same, without an exponent from a hundred-thousandth
+// to a thousand million million, a truth value as "true" or "false".
 func (v Value) String() string {
 	switch v.Kind {
 	case NumberValue:
-		return strconv.FormatFloat(v.Number, 'g', -1, 64)
+		form := byte('f')
+		if size := math.Abs(v.Number); size != 0 && (size < 1e-5 || size >= 1e15) {
+			form = 'g'
+		}
+		return strconv.FormatFloat(v.Number, form, -1, 64)
 	case TruthValue:
 		return strconv.FormatBool(v.Truth)
 	}
