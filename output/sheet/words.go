@@ -88,8 +88,8 @@ func (w wording) text(v model.Value) string {
 	return v.Text
 }
 
-// number writes x with at most the given significant digits (whole numbers up to ten thousand million always in full),
-// a true minus, thin spaces between thousands from five digits on, and a power of ten where it would run long.
+// number writes x with at most the given significant digits, but always with its whole part in full and two decimals up to ten thousand
+// million; a true minus, thin spaces between thousands from five digits on, and a power of ten where it would run long.
 func number(x float64, digits int) string {
 	size := math.Abs(x)
 	sign := ""
@@ -98,6 +98,9 @@ func number(x float64, digits int) string {
 	}
 	if size == math.Trunc(size) && size < 1e10 {
 		return sign + grouped(strconv.FormatFloat(size, 'f', 0, 64))
+	}
+	if size >= 1 && size < 1e10 {
+		digits = max(digits, 2+len(strconv.FormatFloat(math.Trunc(size), 'f', 0, 64)))
 	}
 	rounded, err := strconv.ParseFloat(strconv.FormatFloat(size, 'g', digits, 64), 64)
 	if err != nil || math.IsInf(rounded, 0) || rounded != rounded {

@@ -25,6 +25,8 @@ var numberTests = []struct {
 	{1.0 / 3, 4, "0.3333", "four digits"},
 	{40.317473596635935, 4, "40.32", "four digits"},
 	{12345.678, 7, "12\u2009345.68", "seven digits"},
+	{1234.5, 4, "1234.5", "the whole part in full, and two decimals"},
+	{12345.678, 4, "12\u2009345.68", "likewise"},
 	{0.00025, 4, "0.00025", "plain down to 10^-4"},
 	{0.0000025, 4, "2.5\u2009×\u200910⁻⁶", "power of ten"},
 	{-2e15 / 3, 4, "\u22126.667\u2009×\u200910¹⁴", "power of ten"},
