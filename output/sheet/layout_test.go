@@ -300,3 +300,24 @@ func TestSubject(t *testing.T) {
 		}
 	}
 }
+
+func TestFoot(t *testing.T) {
+	p := bowls()
+	p.Frames[0].Settings.Samples = 16
+	for i := range p.Frames {
+		p.Frames[i].Settings.Width += i
+	}
+	_, c, err := plates(p, &model.Sheet{Name: "s", Rows: []string{"glaze"}, Columns: []string{"gloss"}}, Options{Foot{PlanHash: "3fa0", Stamp: "build 7", Lines: []string{"a remark"}}})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if got, want := strings.Join(c.foot[0], "|"), "scenes/bowls.lua|various sizes|16 and 64 samples|plan 3fa0|build 7"; got != want {
+		t.Errorf("got %q, want %q", got, want)
+	}
+	if got := c.foot[1]; got[len(got)-1] != "Simulation, not a colour proof" || got[len(got)-2] != "Left out for want of a tag: 1" {
+		t.Errorf("got %q", got)
+	}
+	if got := strings.Join(c.foot[2], "|"); got != "a remark" {
+		t.Errorf("got %q", got)
+	}
+}
