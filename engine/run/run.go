@@ -32,7 +32,7 @@ type Finished struct {
 	Frame           int           // index in the plan
 	Linear, Display *pixmap.Image // nil where the frame failed
 	Failure         string        // why the frame failed; empty where it did not
-	Rays            int64         // rays of its cast, in equal shares over the cast's frames
+	Stats           render.Stats  // rays of its cast, in equal shares over the cast's frames
 	Time            time.Duration // wall time of its cast, likewise
 }
 
@@ -131,7 +131,8 @@ func renderCast(ctx context.Context, eng Engine, c render.Cast, o Options, progr
 			continue
 		}
 		r := results[i]
-		part[i].Rays = (r.Stats.CameraRays + r.Stats.ShadowRays) / int64(len(c.Frames))
+		n := int64(len(c.Frames))
+		part[i].Stats = render.Stats{CameraRays: r.Stats.CameraRays / n, ShadowRays: r.Stats.ShadowRays / n}
 		if r.Err != nil {
 			part[i].Failure = r.Err.Error()
 			continue

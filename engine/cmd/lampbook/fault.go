@@ -1,0 +1,70 @@
+package main
+
+import (
+	"context"
+	"errors"
+	"fmt"
+)
+
+// fault is an error with the exit status that it leads to. A nil Err says nothing more: what is to be said has been.
+type fault struct {
+	status int
+	err    error
+}
+
+func (f fault) Error() string {
+	if f.err == nil {
+		return fmt.Sprintf("exit status %d", f.status)
+	}
+	return f.err.Error()
+}
+
+func (f fault) Unwrap() error { return f.err }
+
+// wrong is a mistake on the command line or in the scene.
+func wrong(err error) error {
+	if errors.Is(err, errStopped) || errors.Is(err, context.Canceled) {
+		return fault{statusStopped, errors.New("lampbook: stopped before the scene was read")}
+	}
+	return fault{statusWrong, err}
+}
+
+// wrongf is wrong for a mistake on the command line itself.
+func wrongf(format string, args ...any) error {
+	return fault{statusWrong, fmt.Errorf("lampbook: "+format, args...)}
+}
+
+// failed is something that went wrong in the doing.
+func failed(err error) error { return fault{statusFailed, err} }
+
+// statusOf returns the exit status of an error that a command returned.
+func statusOf(err error) int {
+	var f fault
+	switch {
+	case err == nil:
+		return statusDone
+	case errors.As(err, &f):
+		return f.status
+	default:
+		return statusFailed
+	}
+}
+
+// faults lists the separate faults in an error, one line of text each.
+func faults(err error) []string {
+	var f fault
+	if err == nil || errors.As(err, &f) && f.err == nil {
+		return nil
+	}
+	if errors.As(err, &f) {
+		err = f.err
+	}
+	if many, ok := err.(interface{ Unwrap() []error }); ok {
+		var out []string
+		for _, e := range many.Unwrap() {
+			out = append(out, faults(e)...)
+		}
+		return out
+	}
+	return []string{err.Error()}
+}

@@ -1,0 +1,55 @@
+// Command lampbook renders look-development work in batches: a Lua scene in, pictures and labelled contact sheets out.
+//
+// One file a subcommand (render.go, plan.go, check.go, api.go, examples.go) turns options into calls; scene.go makes the plan that
+// render, plan and check share; folder.go, pictures.go and record.go are what a run leaves on disk; view.go is what it shows meanwhile.
+// May import everything. Start at newRoot.
+package main
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"io"
+	"os"
+	"os/signal"
+	"syscall"
+)
+
+// The exit statuses.
+const (
+	statusDone    = 0
+	statusFailed  = 1 // something failed: a frame, a file that could not be written
+	statusWrong   = 2 // the command line or the scene is wrong
+	statusStopped = 3 // a signal came with work left
+)
+
+// errStopped is the cause of a context that a signal has ended.
+var errStopped = errors.New("stopped")
+
+func main() {
+	os.Exit(execute(os.Args[1:], os.Stdout, os.Stderr))
+}
+
+// execute runs one command line and returns its exit status.
+func execute(args []string, stdout, stderr io.Writer) int {
+	ctx, cancel := context.WithCancelCause(context.Background())
+	defer cancel(nil)
+	signals := make(chan os.Signal, 2)
+	signal.Notify(signals, os.Interrupt, syscall.SIGTERM)
+	defer signal.Stop(signals)
+	go func() {
+		<-signals
+		cancel(errStopped)
+		<-signals
+		os.Exit(statusStopped)
+	}()
+	root := newRoot()
+	root.SetArgs(args)
+	root.SetOut(stdout)
+	root.SetErr(stderr)
+	err := root.ExecuteContext(ctx)
+	for _, fault := range faults(err) {
+		fmt.Fprintln(stderr, fault)
+	}
+	return statusOf(err)
+}

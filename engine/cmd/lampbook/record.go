@@ -1,0 +1,108 @@
+package main
+
+import (
+	"encoding/json"
+	"io"
+	"os"
+	"runtime/debug"
+	"slices"
+	"strings"
+	"time"
+
+	"lampbook/output/encode"
+	"lampbook/output/report"
+)
+
+// The record of a run.
+const (
+	manifestName = "run.json"
+	tableName    = "frames.csv"
+)
+
+// writeRecord writes the manifest and the table of frames.
+func writeRecord(j *job, w *pictures, sheets []report.SheetRecord, r *request, start time.Time) error {
+	p := j.plan
+	record := report.Run{
+		Engine: version(), Scene: p.Scene, PlanHash: w.hasher.Plan().String(), Stamp: r.stamp,
+		Params: p.Params, Warnings: p.Warnings, Sheets: sheets,
+		Times: report.Times{Started: start.UTC().Format(time.RFC3339), Wall: time.Since(start).Seconds(), CPU: processorSeconds()},
+	}
+	for i, o := range w.taken {
+		f := &p.Frames[i]
+		record.Frames = append(record.Frames, report.FrameRecord{
+			Name: f.Name, Tags: f.Tags, Hash: w.hasher.Frame(i).String(), State: o.state, Reason: o.failure, Files: o.files, Settings: f.Settings,
+			CameraRays: o.rays.CameraRays, ShadowRays: o.rays.ShadowRays, Seconds: o.seconds,
+		})
+	}
+	err := encode.WriteFile(w.folder.path(manifestName), func(to io.Writer) error { return report.WriteManifest(to, record) })
+	if err != nil {
+		return err
+	}
+	return encode.WriteFile(w.folder.path(tableName), func(to io.Writer) error { return report.WriteFrames(to, record) })
+}
+
+// version is the program's version as the Go tools built it in.
+func version() string {
+	if info, ok := debug.ReadBuildInfo(); ok && info.Main.Version != "" {
+		return info.Main.Version
+	}
+	return "unknown"
+}
+
+// maxManifest is the size of the largest manifest of an earlier run that is read: that of a plan with the most frames.
+const maxManifest = 1 << 30
+
+// earlierFiles lists the files that the folder's manifest says an earlier run left, slash-separated, those that are still there. A
+// manifest that is missing or cannot be read lists none.
+func earlierFiles(f *runFolder) []string {
+	file, err := os.Open(f.path(manifestName))
+	if err != nil {
+		return nil
+	}
+	defer file.Close()
+	type written struct{ Files []string }
+	var earlier struct{ Frames, Sheets []written }
+	if err := json.NewDecoder(io.LimitReader(file, maxManifest)).Decode(&earlier); err != nil {
+		return nil
+	}
+	var out []string
+	for _, w := range slices.Concat(earlier.Frames, earlier.Sheets) {
+		for _, name := range w.Files {
+			if info, err := os.Lstat(f.path(name)); err == nil && info.Mode().IsRegular() {
+				out = append(out, name)
+			}
+		}
+	}
+	return out
+}
+
+// tellLeftOver names the files of an earlier run that neither this one has written nor another choice of its frames would write.
+func tellLeftOver(v *view, folder *runFolder, earlier []string, j *job, w *pictures) {
+	var left []string
+	current := map[string]bool{}
+	for _, name := range j.files {
+		current[name] = true
+	}
+	for i, o := range w.taken {
+		if o.state != report.Failed {
+			continue
+		}
+		for _, file := range w.files(i) {
+			current[file.name] = false
+		}
+	}
+	for _, name := range earlier {
+		if !current[name] {
+			left = append(left, name)
+		}
+	}
+	if len(left) == 0 {
+		return
+	}
+	const most = 5
+	names := strings.Join(left[:min(most, len(left))], ", ")
+	if len(left) > most {
+		names += ", …"
+	}
+	v.remark("%s: %s of an earlier run, not made by this one: %s", folder.dir, count(len(left), "file"), names)
+}

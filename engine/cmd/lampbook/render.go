@@ -1,0 +1,159 @@
+package main
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"time"
+
+	"github.com/spf13/cobra"
+
+	"lampbook/engine/render"
+	"lampbook/engine/run"
+	"lampbook/output/report"
+)
+
+func newRender() *cobra.Command {
+	var r request
+	cmd := &cobra.Command{
+		Use:   "render SCENE [options]",
+		Short: "Renders a scene's pictures and lays its contact sheets",
+		Long: `Evaluates a scene, renders every frame that it registers and lays its contact sheets.
+The pictures go to DIR/frames, the sheets to DIR/sheets, the record to DIR/run.json and
+DIR/frames.csv. Exit status 0: done; 1: something failed; 2: the command line or the scene is
+wrong; 3: stopped by a signal with work left. Ctrl-C stops in good order, twice at once.`,
+		Example: `  lampbook render scenes/first_sheet.lua
+  lampbook render scenes/first_sheet.lua --draft --only glaze=celadon`,
+		RunE: func(cmd *cobra.Command, args []string) error {
+			if err := r.accept(args[0]); err != nil {
+				return err
+			}
+			return renderScene(cmd, &r)
+		},
+	}
+	addOptions(cmd, &r)
+	return cmd
+}
+
+// renderScene renders a job into its folder.
+func renderScene(cmd *cobra.Command, r *request) error {
+	ctx := cmd.Context()
+	j, err := load(ctx, r, cmd.ErrOrStderr())
+	if err != nil {
+		return err
+	}
+	folder, err := openFolder(r.out)
+	if err != nil {
+		return failed(err)
+	}
+	defer folder.close()
+	v := newView(cmd.OutOrStdout(), cmd.ErrOrStderr(), r)
+	v.warn(j.plan)
+
+	start := time.Now()
+	earlier := earlierFiles(folder)
+	w := newPictures(folder, j.plan)
+	summary, err := renderFrames(ctx, j, r, v, w)
+	stopped := errors.Is(err, errStopped)
+	if err != nil && !stopped {
+		// The pictures written so far are there: let the record say so, if the disk still takes it.
+		_ = writeRecord(j, w, nil, r, start)
+		v.emit(endOf(statusFailed, start, summary))
+		return failed(err)
+	}
+	for _, line := range faultyFrames(j.plan, func(i int) string { return w.taken[i].failure }) {
+		v.fault(line)
+	}
+	sheets, err := laySheets(j.plan, w, r.stamp, v)
+	err = errors.Join(err, writeRecord(j, w, sheets, r, start))
+	tellLeftOver(v, folder, earlier, j, w)
+	status := statusDone
+	switch {
+	case err != nil || summary.Failed > 0 && !stopped:
+		status = statusFailed
+	case stopped:
+		status = statusStopped
+	}
+	v.emit(endOf(status, start, summary))
+	v.say("%s", endText(summary, sheets, folder, time.Since(start)))
+	if err := errors.Join(err, v.unwritten()); err != nil {
+		return failed(err)
+	}
+	if status != statusDone {
+		return fault{status: status}
+	}
+	return nil
+}
+
+// renderFrames runs the plan and shows how it goes.
+func renderFrames(ctx context.Context, j *job, r *request, v *view, w *pictures) (run.Summary, error) {
+	events := make(chan run.Event, 256)
+	o := run.Options{Threads: r.threads, Alone: r.alone, Events: events}
+	shown := make(chan struct{})
+	m := newMeter(len(j.plan.Frames), run.Casts(j.plan, o))
+	go func() {
+		defer close(shown)
+		v.follow(ctx, m, events, w.frameLine)
+	}()
+	summary, err := run.Run(ctx, render.NewEngine(j.library), j.plan, o, w.take)
+	close(events)
+	<-shown
+	return summary, err
+}
+
+// frameLine is the JSON line of a frame that the sink has taken.
+func (w *pictures) frameLine(e run.Event) any {
+	f, o := &w.plan.Frames[e.Frame], &w.taken[e.Frame]
+	return frameLine{"frame", f.Name, tagsObject(f), string(o.state), o.failure, o.files, o.seconds}
+}
+
+type frameLine struct {
+	Event   string   `json:"event"`
+	Name    string   `json:"name"`
+	Tags    tagList  `json:"tags"`
+	State   string   `json:"state"`            // "done" or "failed"
+	Reason  string   `json:"reason,omitempty"` // why it failed
+	Files   []string `json:"files,omitempty"`  // relative to the run's folder
+	Seconds float64  `json:"seconds"`          // its share of its cast
+}
+
+// endOf is the last JSON line of a run.
+func endOf(status int, start time.Time, s run.Summary) any {
+	return endLine{"end", status, s.Done, s.Failed, s.Left, s.Rays, time.Since(start).Seconds()}
+}
+
+type endLine struct {
+	Event   string  `json:"event"`
+	Status  int     `json:"status"` // the exit status
+	Done    int     `json:"done"`
+	Failed  int     `json:"failed"`
+	Left    int     `json:"left"`
+	Rays    int64   `json:"rays"`
+	Seconds float64 `json:"seconds"`
+}
+
+// endText is the line that a run ends with: frames, time, rays per second, where the sheets are.
+func endText(s run.Summary, sheets []report.SheetRecord, folder *runFolder, took time.Duration) string {
+	text := count(s.Done, "frame") + " done"
+	if s.Failed > 0 {
+		text += fmt.Sprintf(", %d failed", s.Failed)
+	}
+	if s.Left > 0 {
+		text += fmt.Sprintf(", %d left", s.Left)
+	}
+	text += " in " + span(took)
+	if s.Rays > 0 {
+		text += ", " + rate(s.Rays, took)
+	}
+	var pages []string
+	for _, sheet := range sheets {
+		pages = append(pages, sheet.Files...)
+	}
+	switch len(pages) {
+	case 0:
+		return text + ": " + folder.path(framesFolder)
+	case 1:
+		return text + ": " + folder.path(pages[0])
+	}
+	return fmt.Sprintf("%s: %s in %s", text, count(len(pages), "sheet"), folder.path(sheetsFolder))
+}

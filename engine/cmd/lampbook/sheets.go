@@ -1,0 +1,130 @@
+package main
+
+import (
+	"errors"
+	"fmt"
+	"image"
+	"image/png"
+	"io"
+	"os"
+	"path"
+	"slices"
+
+	"lampbook/engine/model"
+	"lampbook/output/encode"
+	"lampbook/output/report"
+	"lampbook/output/sheet"
+)
+
+// sheetPages lists the files of the plan's sheets, slash-separated, in the order in which they are laid. Two sheets of which pages
+// would have one name are an error.
+func sheetPages(p *model.Plan) ([]string, error) {
+	var files []string
+	owner := map[string]model.Sheet{}
+	for _, s := range p.Sheets {
+		names, err := sheet.Names(p, s, sheet.Options{})
+		if err != nil {
+			return nil, err
+		}
+		for _, n := range names {
+			if other, taken := owner[n]; taken {
+				return nil, fmt.Errorf("%ssheet %s: its page %s would have the name of one of sheet %s: give it another name", place(s.Pos), s.Name, n, other.Name)
+			}
+			owner[n] = s
+			files = append(files, path.Join(sheetsFolder, n+".png"))
+		}
+	}
+	return files, nil
+}
+
+// laySheets lays every sheet of the plan from the pictures on disk and returns what became of each. A sheet that cannot be laid
+// does not keep the others from it.
+func laySheets(p *model.Plan, w *pictures, stamp string, v *view) ([]report.SheetRecord, error) {
+	planHash := w.hasher.Plan()
+	var records []report.SheetRecord
+	var faults error
+	for _, s := range p.Sheets {
+		record := report.SheetRecord{Name: s.Name}
+		o := sheet.Options{Foot: sheet.Foot{PlanHash: planHash.Short(), Stamp: stamp}}
+		err := sheet.Lay(p, s, w.tile, o, func(page sheet.Page) error {
+			name := path.Join(sheetsFolder, page.Name+".png")
+			about := encode.Options{Text: []encode.KeyValue{
+				{Key: "Software", Value: software},
+				{Key: "scene", Value: p.Scene},
+				{Key: "sheet", Value: s.Name},
+				{Key: "planHash", Value: planHash.String()},
+			}}
+			err := encode.WriteFile(w.folder.path(name), func(to io.Writer) error { return encode.PNGImage(to, page.Image, about) })
+			if err != nil {
+				return err
+			}
+			record.Files = append(record.Files, name)
+			v.emit(sheetLine{"sheet", s.Name, name})
+			return nil
+		})
+		if err != nil {
+			record.Reason = err.Error()
+			faults = errors.Join(faults, err)
+		}
+		records = append(records, record)
+	}
+	return records, faults
+}
+
+// sheetLine is the JSON line of a page of a sheet.
+type sheetLine struct {
+	Event string `json:"event"`
+	Name  string `json:"name"`
+	File  string `json:"file"` // relative to the run's folder
+}
+
+// tile fetches what a sheet shows of a frame: the picture, or one of its passes, as it was written.
+func (w *pictures) tile(frame int, pass string) (sheet.Tile, error) {
+	o := w.taken[frame]
+	switch o.state {
+	case report.Failed:
+		return sheet.Tile{Failure: o.failure}, nil
+	case report.Waiting:
+		return sheet.Tile{Failure: "not rendered: the run was stopped before"}, nil
+	}
+	for _, file := range w.files(frame) {
+		if file.pass == pass && isPNG(file.format) {
+			picture, err := readPNG(w.folder.path(file.name))
+			return sheet.Tile{Image: picture}, err
+		}
+	}
+	return sheet.Tile{}, fmt.Errorf("frame %s has no picture of %q", w.plan.Frames[frame].Name, pass)
+}
+
+func readPNG(path string) (image.Image, error) {
+	f, err := os.Open(path)
+	if err != nil {
+		return nil, err
+	}
+	picture, err := png.Decode(f)
+	if err = errors.Join(err, f.Close()); err != nil {
+		return nil, fmt.Errorf("%s: %w", path, err)
+	}
+	return picture, nil
+}
+
+// showing is how the plan's sheets show a frame.
+type showing struct {
+	shown  bool // some sheet shows it
+	passes bool // some sheet shows its passes
+}
+
+// onSheets returns how the plan's sheets show each frame.
+func onSheets(p *model.Plan) []showing {
+	out := make([]showing, len(p.Frames))
+	for _, s := range p.Sheets {
+		passes := slices.Contains(slices.Concat(s.Rows, s.Columns, s.Pages), model.AxisPass)
+		for i := range p.Frames {
+			if s.Shows(&p.Frames[i]) {
+				out[i].shown = true
+				out[i].passes = out[i].passes || passes
+			}
+		}
+	}
+	return out
+}
