@@ -78,7 +78,7 @@ func Build(positions []geom.Vec3, triangles [][3]uint32, o BuildOptions) *Tree {
 		t.wide.bounds = t.bounds
 		return t
 	}
-	t.tris = make([]tri.Triangle, len(refs))
+	t.tris = room[tri.Triangle](len(refs))
 	for i := range refs {
 		f := triangles[refs[i].id]
 		t.tris[i] = tri.Make(positions[f[0]], positions[f[1]], positions[f[2]], refs[i].id)

@@ -10,7 +10,7 @@ const leafBit = 1 << 31
 
 // pairUp lays a binary tree out as pairs, depth first.
 func pairUp(nodes []node) []pair {
-	var out []pair
+	out := room[pair](len(nodes)/2 + 1)[:0]
 	var lay func(children []node) uint32
 	lay = func(children []node) uint32 {
 		at := len(out)

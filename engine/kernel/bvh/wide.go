@@ -32,7 +32,15 @@ type wideTree struct {
 // surface until there are eight.
 func widen(nodes []node, refs []ref, positions []geom.Vec3, triangles [][3]uint32) wideTree {
 	var w wideTree
-	w.nodes = append(w.nodes, wideNode{})
+	inner, leaves := 0, 0
+	for i := range nodes {
+		if nodes[i].count > 0 {
+			leaves++
+		} else {
+			inner++
+		}
+	}
+	w.nodes, w.blocks = room[wideNode](inner + 1)[:1], room[block](leaves)[:0]
 	var lay func(at uint32, src *node)
 	lay = func(at uint32, src *node) {
 		var kids [8]*node
