@@ -16,6 +16,7 @@ var benchLamps = []struct {
 	{"point", Spec{Kind: Point, Position: geom.Vec3d{Y: 2}}},
 	{"spot", Spec{Kind: Spot, Position: geom.Vec3d{Y: 2}, Inner: 20, Outer: 40, Range: 10}},
 	{"rectangle", Spec{Kind: Rectangle, Position: geom.Vec3d{Y: 2}, Width: 1, Height: 0.5}},
+	{"rectangle/even", Spec{Kind: Rectangle, Position: geom.Vec3d{Y: 2}, Width: 0.4, Height: 0.4}},
 	{"disk", Spec{Kind: Disk, Position: geom.Vec3d{Y: 2}, Radius: 0.5}},
 	{"sphere", Spec{Kind: Sphere, Position: geom.Vec3d{Y: 2}, Radius: 0.5}},
 }

@@ -11,9 +11,12 @@ import (
 // allocates nothing. The zero value is dark.
 type Prepared struct {
 	mode   mode
-	weight float32   // of every sample: single, byAngle, cone
+	weight float32   // of every sample: single, byAngle, cone; even: area times the distance of the plane
 	wi     geom.Vec3 // single
 	dist   float32   // single
+	corner geom.Vec3 // even: vector from the point to a corner
+	across geom.Vec3 // even: the rectangle's edges
+	along  geom.Vec3
 	rect   rectangle // byAngle, byArea
 	cone   ellipticCone
 }
@@ -24,8 +27,9 @@ type mode uint8
 const (
 	dark    mode = iota
 	single       // one direction
+	even         // rectangle seen evenly, uniform in area
 	byAngle      // rectangle, uniform in solid angle
-	byArea       // rectangle, uniform in area
+	byArea       // rectangle seen edge on, uniform in area
 	ellipse      // disk
 	cone         // sphere
 )
@@ -116,9 +120,14 @@ func (l *Lamp) emittingSide(d geom.Vec3d) (h float64, ok bool) {
 	return h, h < 0 && h >= -math.MaxFloat64 || h > 0 && h <= math.MaxFloat64 && l.twoSided
 }
 
-// prepareRectangle follows Ureña, Fajardo & King 2013, "An area-preserving parametrization for spherical rectangles",
-// in float64: the angles of a distant rectangle differ in their tenth decimal. Where even that is too little, the
-// rectangle is so small that sampling it by area is as good.
+// evenEnough is the ratio of the squared distances to a rectangle's farthest and nearest places up to which it is sampled by
+// area: the weights, which go with the inverse cube of the distance, are then within 1.2^1.5 = 1.31 of each other. A scrambled net sums so
+// gentle a change to a thousandth at 64 samples, far below what visibility leaves; and a sample costs a fifth.
+const evenEnough = 1.2
+
+// prepareRectangle samples by area what is seen evenly, and else follows Ureña, Fajardo & King 2013, "An area-preserving
+// parametrization for spherical rectangles", in float64: the angles of a distant rectangle differ in their tenth
+// decimal. Where even that is too little, the rectangle is so thin that sampling it by area is as good.
 func (l *Lamp) prepareRectangle(p geom.Vec3d, q *Prepared) {
 	d := l.Position.Sub(p)
 	h, ok := l.emittingSide(d)
@@ -131,6 +140,14 @@ func (l *Lamp) prepareRectangle(p geom.Vec3d, q *Prepared) {
 		r.z, r.z0 = l.Axis.Neg(), -h
 	}
 	cx, cy := d.Dot(l.U), d.Dot(l.V)
+	ax, ay := math.Abs(cx), math.Abs(cy)
+	farX, farY := ax+l.HalfWidth, ay+l.HalfHeight
+	nearX, nearY := max(0, ax-l.HalfWidth), max(0, ay-l.HalfHeight)
+	h2 := float64(h * h)
+	if float64(farX*farX)+float64(farY*farY)+h2 <= evenEnough*(float64(nearX*nearX)+float64(nearY*nearY)+h2) {
+		q.flat(d, l, math.Abs(h))
+		return
+	}
 	r.x0, r.x1 = cx-l.HalfWidth, cx+l.HalfWidth
 	r.y0, r.y1 = cy-l.HalfHeight, cy+l.HalfHeight
 	z2 := float64(r.z0 * r.z0)
@@ -150,6 +167,15 @@ func (l *Lamp) prepareRectangle(p geom.Vec3d, q *Prepared) {
 	r.b0, r.b1, r.c0 = n0, n2, z2/(float64(r.y0*r.y0)+z2)
 	r.k = math.Pi - s23
 	q.mode, q.weight = byAngle, float32(r.solidAngle)
+}
+
+// flat readies q for sampling by area; d is the vector to the rectangle's centre and h the distance of its plane.
+func (q *Prepared) flat(d geom.Vec3d, l *Lamp, h float64) {
+	across, along := l.U.Scale(2*l.HalfWidth), l.V.Scale(2*l.HalfHeight)
+	q.mode = even
+	q.corner = d.Sub(l.U.Scale(l.HalfWidth)).Sub(l.V.Scale(l.HalfHeight)).Narrow()
+	q.across, q.along = across.Narrow(), along.Narrow()
+	q.weight = float32(4 * l.HalfWidth * l.HalfHeight * h)
 }
 
 // asinSum returns asin a + asin b as one angle, by the addition theorem.

@@ -17,6 +17,11 @@ func (q *Prepared) Sample(u, v float32) (wi geom.Vec3, dist, weight float32) {
 		return q.wi, q.dist, q.weight
 	case byAngle:
 		return q.rect.byAngle(float64(u), float64(v), q.weight)
+	case even:
+		toLamp := q.corner.AddScaled(u, q.across).AddScaled(v, q.along)
+		dist = float32(math.Sqrt(float64(toLamp.Dot(toLamp))))
+		i := 1 / dist
+		return toLamp.Scale(i), dist, float32(float32(float32(q.weight*i)*i) * i)
 	case byArea:
 		return q.rect.byArea(float64(u), float64(v))
 	case ellipse:
