@@ -8,7 +8,6 @@ import (
 	"os"
 	"path/filepath"
 	"strings"
-	"syscall"
 	"testing"
 
 	"lampbook/lua/bind"
@@ -135,7 +134,7 @@ func TestSceneFiles(t *testing.T) {
 		return p
 	}
 	fifo := filepath.Join(dir, "pipe.lua")
-	if err := syscall.Mkfifo(fifo, 0o644); err != nil {
+	if err := makePipe(fifo); err != nil {
 		t.Skipf("no pipes here: %v", err)
 	}
 	for path, want := range map[string]string{
@@ -215,14 +214,13 @@ func TestFilesJail(t *testing.T) {
 			t.Skipf("no links here: %v", err)
 		}
 	}
-	if err := syscall.Mkfifo(filepath.Join(dir, "scene/pipe.obj"), 0o644); err != nil {
+	if err := makePipe(filepath.Join(dir, "scene/pipe.obj")); err != nil {
 		t.Skipf("no pipes here: %v", err)
 	}
 	f, err := OpenFiles(filepath.Join(dir, "scene"), []string{filepath.Join(dir, "assets")}, 17)
 	if err != nil {
 		t.Fatal(err)
 	}
-	defer f.Close()
 	for name, want := range map[string]string{
 		"in.obj": "scene/in.obj", "./sub/../in.obj": "scene/in.obj", "sub/deep.obj": "scene/sub/deep.obj", "shared.obj": "assets/shared.obj",
 		"inside.obj": "scene/sub/deep.obj", "../assets/shared.obj": "assets/shared.obj", filepath.Join(dir, "assets/shared.obj"): "assets/shared.obj",

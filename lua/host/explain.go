@@ -248,19 +248,12 @@ func (v view) callFault(on []note) string {
 			each = n.names[0]
 		}
 	}
-	callable := func(x lua.LValue) bool {
-		_, ok := x.(*lua.LFunction)
-		if m, is := v.s.metatable(x).(*lua.LTable); is {
-			ok = ok || m.RawGetString("__call") != lua.LNil
-		}
-		return ok
-	}
 	if each != "" {
-		if value, _, _, ok := v.path(each); ok && !callable(value) {
+		if value, _, _, ok := v.path(each); ok && !v.s.callable(value) {
 			return fmt.Sprintf("'%s' is %s, and 'for … in' needs an iterator: write pairs(%s) or ipairs(%s)", each, article(kind(value)), each, each)
 		}
 	}
-	found := v.likely(names, func(x lua.LValue) bool { return !callable(x) })
+	found := v.likely(names, func(x lua.LValue) bool { return !v.s.callable(x) })
 	if len(found) == 1 {
 		if value, _, _, ok := v.path(found[0]); ok {
 			return fmt.Sprintf("'%s' is %s and cannot be called%s", found[0], article(kind(value)), v.near(found))

@@ -15,20 +15,29 @@ import (
 )
 
 // Files reads what a scene may read: regular files in the scene's own folder and in the folders given with --assets. Links are
-// followed inside a folder, never out of it. Single-threaded; Close it.
+// followed inside a folder, never out of it. It holds nothing open and may be shared.
 type Files struct {
 	roots []root // the scene's folder first
 	most  int64  // bytes of one file
 }
 
-// root is a folder held open, so that what a name means cannot change under a check.
+// root is a folder.
 type root struct {
-	dir  string // as given, slash-separated, clean
-	abs  string // absolute, links resolved
-	open *os.Root
+	dir string // as given, slash-separated, clean
+	abs string // absolute, links resolved
 }
 
-// OpenFiles opens the scene's folder and the further ones. most is the size that one file may have, in bytes.
+// inside opens the folder for as long as work takes: all that happens there stays within it, whatever links say.
+func (r root) inside(work func(folder *os.Root) error) error {
+	folder, err := os.OpenRoot(r.abs)
+	if err != nil {
+		return err
+	}
+	defer folder.Close()
+	return work(folder)
+}
+
+// OpenFiles finds the scene's folder and the further ones. most is the size that one file may have, in bytes.
 func OpenFiles(sceneDir string, assets []string, most int64) (*Files, error) {
 	f := &Files{most: most}
 	for i, dir := range append([]string{sceneDir}, assets...) {
@@ -40,25 +49,16 @@ func OpenFiles(sceneDir string, assets []string, most int64) (*Files, error) {
 		if err == nil {
 			abs, err = filepath.EvalSymlinks(abs)
 		}
-		var open *os.Root
+		r := root{dir: path.Clean(filepath.ToSlash(dir)), abs: abs}
 		if err == nil {
-			open, err = os.OpenRoot(abs)
+			err = r.inside(func(*os.Root) error { return nil })
 		}
 		if err != nil {
-			f.Close()
 			return nil, &Error{Msg: fmt.Sprintf("%s %s: %s", what, dir, reason(err)), Cause: err}
 		}
-		f.roots = append(f.roots, root{dir: path.Clean(filepath.ToSlash(dir)), abs: abs, open: open})
+		f.roots = append(f.roots, r)
 	}
 	return f, nil
-}
-
-// Close gives the folders back.
-func (f *Files) Close() {
-	for _, r := range f.roots {
-		// Nothing was written, so nothing can be lost.
-		_ = r.open.Close()
-	}
 }
 
 // Find returns where a path written in the scene leads: relative to the scene's folder or, where nothing is there, to the folders given
@@ -96,18 +96,22 @@ func (f *Files) Read(file string) ([]byte, error) {
 	if err != nil {
 		return nil, err
 	}
-	if err := r.regular(rel); err != nil {
-		return nil, f.complain(file, err)
-	}
-	in, err := r.open.Open(filepath.FromSlash(rel))
-	if err != nil {
-		return nil, f.complain(file, err)
-	}
-	defer in.Close()
-	if info, err := in.Stat(); err != nil || !info.Mode().IsRegular() {
-		return nil, f.complain(file, errIrregular)
-	}
-	text, err := io.ReadAll(io.LimitReader(in, f.most+1))
+	var text []byte
+	err = r.inside(func(folder *os.Root) error {
+		if err := regular(folder, rel); err != nil {
+			return err
+		}
+		in, err := folder.Open(filepath.FromSlash(rel))
+		if err != nil {
+			return err
+		}
+		defer in.Close()
+		if info, err := in.Stat(); err != nil || !info.Mode().IsRegular() {
+			return errIrregular
+		}
+		text, err = io.ReadAll(io.LimitReader(in, f.most+1))
+		return err
+	})
 	if err != nil {
 		return nil, f.complain(file, err)
 	}
@@ -170,9 +174,14 @@ var (
 	errIrregular = errors.New("not a regular file")
 )
 
-// regular checks that a path inside the folder leads to a regular file, without opening it: a pipe would wait for ever.
+// regular checks that a path inside the folder leads to a regular file.
 func (r root) regular(rel string) error {
-	info, err := r.open.Stat(filepath.FromSlash(rel))
+	return r.inside(func(folder *os.Root) error { return regular(folder, rel) })
+}
+
+// regular does so without opening the file: a pipe would wait for ever.
+func regular(folder *os.Root, rel string) error {
+	info, err := folder.Stat(filepath.FromSlash(rel))
 	if err != nil {
 		return err
 	}
@@ -273,26 +282,29 @@ func (f *Files) modules(dir string) []string {
 	return slices.Compact(names)
 }
 
-// list returns the names of the regular files in a folder, sorted, at most a thousand.
+// list returns the names of the regular files in a folder, sorted, at most a thousand; none where the folder cannot be read.
 func (r root) list(dir string) []string {
-	name := filepath.FromSlash(dir)
-	if info, err := r.open.Stat(name); err != nil || !info.IsDir() {
-		return nil
-	}
-	d, err := r.open.Open(name)
-	if err != nil {
-		return nil
-	}
-	defer d.Close()
-	entries, err := d.ReadDir(1000)
-	if err != nil {
-		return nil
-	}
 	var names []string
-	for _, e := range entries {
-		if e.Type().IsRegular() {
-			names = append(names, e.Name())
+	err := r.inside(func(folder *os.Root) error {
+		name := filepath.FromSlash(dir)
+		if info, err := folder.Stat(name); err != nil || !info.IsDir() {
+			return err
 		}
+		d, err := folder.Open(name)
+		if err != nil {
+			return err
+		}
+		defer d.Close()
+		entries, err := d.ReadDir(1000)
+		for _, e := range entries {
+			if e.Type().IsRegular() {
+				names = append(names, e.Name())
+			}
+		}
+		return err
+	})
+	if err != nil && !errors.Is(err, io.EOF) {
+		return nil
 	}
 	slices.Sort(names)
 	return names

@@ -37,12 +37,15 @@ func ParseOverride(text string) (Override, error) {
 	return Override{Name: name, Text: value}, nil
 }
 
-// Evaluate runs the scene file and returns its plan, which is valid, and the library in which the scene's meshes were built. The
-// same files and options give the same plan, byte for byte. An error is an *Error.
+// Evaluate runs the scene file and returns its plan, which is valid, and the library in which the scene's meshes were built, and which
+// builds the rest from the same files. The same files and options give the same plan, byte for byte. An error is an *Error.
 //
 // Evaluate ends in bounded time and memory whatever the scene says (Limits), and soon after ctx is done. It may be called from several
 // goroutines at once, though the bound on memory then counts what all of them use.
 func Evaluate(ctx context.Context, scene string, o Options) (*model.Plan, *mesh.Library, error) {
+	if err := o.Limits.validate(); err != nil {
+		return nil, nil, err
+	}
 	limits := o.Limits.withDefaults()
 	name := filepath.ToSlash(filepath.Clean(scene))
 	if shipped(name) {
@@ -52,12 +55,15 @@ func Evaluate(ctx context.Context, scene string, o Options) (*model.Plan, *mesh.
 	if err != nil {
 		return nil, nil, asError(err)
 	}
-	defer files.Close()
 	text, err := readScene(scene, limits)
 	if err != nil {
 		return nil, nil, err
 	}
+	if err := ctx.Err(); err != nil {
+		return nil, nil, &Error{Pos: model.Pos{File: name}, Msg: interrupted(err), Cause: err}
+	}
 	meter := newMeter(ctx, limits)
+	defer meter.end()
 	reading := metered{meter, files}
 	library := mesh.NewLibrary(reading.Read)
 	env := &bind.Env{Scene: name, Files: reading, Meshes: meteredMeshes{meter, library}, Overrides: o.Set, Forced: o.Forced, Shipped: shipped}

@@ -13,7 +13,7 @@ import (
 )
 
 // tight are limits that a hostile script meets soon, so that the tests are quick. The default ones are met in TestDefaultLimits.
-var tight = Limits{Steps: 3_000_000, Memory: 48 << 20, Time: 400 * time.Millisecond}
+var tight = Limits{Steps: 2_000_000, Memory: 24 << 20, Time: 250 * time.Millisecond}
 
 // The hostile scripts. bound says which resource would be without bound, want what the error says, and pcall whether a script that
 // wraps the attack in pcall must end too: a bound that is a plain error of the script may be caught.
@@ -132,7 +132,7 @@ func TestHostileScripts(t *testing.T) {
 // TestPcallCannotHideABound runs each attack on a bound that is final inside pcall: the scene must end all the same.
 func TestPcallCannotHideABound(t *testing.T) {
 	quick := tight
-	quick.Steps, quick.Time = 200_000, 100*time.Millisecond
+	quick.Steps, quick.Time, quick.Memory = 100_000, 50*time.Millisecond, 8<<20
 	for _, h := range hostile {
 		if !h.fatal {
 			continue
@@ -151,7 +151,7 @@ func TestPcallCannotHideABound(t *testing.T) {
 func TestDefaultLimits(t *testing.T) {
 	began := processorTime()
 	_, err := trial{}.run(`while true do end`)
-	if err == nil || !strings.Contains(err.Error(), "150,000,000 steps") {
+	if err == nil || !strings.Contains(err.Error(), "250,000,000 steps") {
 		t.Error(err)
 	}
 	t.Logf("an endless loop ends after %v of processor time", processorTime()-began)

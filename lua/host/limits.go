@@ -1,10 +1,13 @@
 package host
 
-import "time"
+import (
+	"fmt"
+	"time"
+)
 
 // Limits bound what one evaluation may use. The zero value of a field means its default.
 type Limits struct {
-	Steps  int64         // work units, one virtual-machine instruction or 32 bytes each; default 150 million (one to two seconds)
+	Steps  int64         // work units, one virtual-machine instruction or 32 bytes each; default 250 million (about two seconds)
 	Memory int64         // bytes that the heap may grow by, meshes not counted; default 512 MiB
 	Time   time.Duration // processor time, reading files and building meshes not counted; default 10 s, the net under Steps
 	Meshes int64         // bytes that the heap may grow by while files are read and meshes built; default 4 GiB
@@ -29,10 +32,26 @@ const (
 	maxUpvalues   = 60      // as in the reference implementation
 )
 
+// validate refuses negative bounds.
+func (l Limits) validate() error {
+	for _, bound := range []struct {
+		name string
+		v    int64
+	}{
+		{"steps", l.Steps}, {"memory", l.Memory}, {"time", int64(l.Time)}, {"meshes", l.Meshes}, {"build", int64(l.Build)},
+		{"source", int64(l.Source)}, {"file", l.File},
+	} {
+		if bound.v < 0 {
+			return &Error{Msg: fmt.Sprintf("limits: %s must be at least 0, got %d", bound.name, bound.v)}
+		}
+	}
+	return nil
+}
+
 // withDefaults replaces zero fields.
 func (l Limits) withDefaults() Limits {
 	if l.Steps == 0 {
-		l.Steps = 150_000_000
+		l.Steps = 250_000_000
 	}
 	if l.Memory == 0 {
 		l.Memory = 512 << 20

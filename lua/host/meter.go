@@ -198,10 +198,14 @@ func (m *meter) engine(work func()) {
 	work()
 }
 
+// end stops counting: what the mesh library does after the evaluation is not the scene's.
+func (m *meter) end() { m.busy = true }
+
 // settle looks again at what meshes hold once their garbage is gone.
 func (m *meter) settle() {
 	runtime.GC()
-	held := m.heap() - min(m.heap(), m.origin)
+	held := m.heap()
+	held -= min(held, m.origin)
 	if held > uint64(m.limits.Meshes+m.limits.Memory) {
 		m.stop(fmt.Sprintf("the scene's files and meshes hold more than %d MiB", m.limits.Meshes>>20), nil)
 		return

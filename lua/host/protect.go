@@ -145,8 +145,20 @@ const relayName = "pcall.lua"
 // luaPcall is pcall(f, ...).
 func (s *sandbox) luaPcall(l *lua.LState) int {
 	f := s.any(l, "pcall", 1)
+	if !s.callable(f) {
+		return s.outcome(l, nil, lua.LString(s.placed(fmt.Sprintf("pcall: argument 1 is %s and cannot be called", article(kind(f))))))
+	}
 	th, fault := s.protect(l, f, s.rest(l, 2))
 	return s.outcome(l, th, fault)
+}
+
+// callable reports whether a value can be called.
+func (s *sandbox) callable(v lua.LValue) bool {
+	if _, ok := v.(*lua.LFunction); ok {
+		return true
+	}
+	m, ok := s.metatable(v).(*lua.LTable)
+	return ok && m.RawGetString("__call") != lua.LNil
 }
 
 // luaXpcall is xpcall(f, handler). The handler runs after the stack is unwound; there is no debug library that could tell.

@@ -7,9 +7,7 @@ import (
 	"strings"
 )
 
-// modules holds this folder: the embedding takes its Go files along so that it also stands before the first module does.
-//
-//go:embed *
+//go:embed *.lua
 var modules embed.FS
 
 // Source returns the text of a module; ok is false where the program has none of that name.
