@@ -2,6 +2,7 @@ package bvh
 
 import (
 	"math"
+	"unsafe"
 
 	"lampbook/engine/kernel/tri"
 )
@@ -9,6 +10,16 @@ import (
 // order orders floats >= +0 as integers. Of a negative one it gives a negative integer, which only ever loses as an entering distance
 // and only ever fails as a leaving one. Integer comparisons become conditional moves, float comparisons would be branches.
 func order(f float32) int32 { return int32(math.Float32bits(f)) }
+
+// rows gives the offsets in a pair of the planes of an axis that a ray meets first and last.
+func rows(inv float32, row uintptr) (first, last uintptr) {
+	if inv < 0 {
+		return row + 8, row
+	}
+	return row, row + 8
+}
+
+func at32(p unsafe.Pointer, offset uintptr) float32 { return *(*float32)(unsafe.Add(p, offset)) }
 
 const stackSize = 64 // a binary tree is at most 64 levels deep, see maxDepth
 
@@ -20,29 +31,22 @@ func walkClosest(pairs []pair, tris []tri.Triangle, stack *pairStack, r *tri.Ray
 	nx, ny, nz := r.Near[0], r.Near[1], r.Near[2]
 	fx, fy, fz := r.Far[0], r.Far[1], r.Far[2]
 	ix, iy, iz := r.Inv[0], r.Inv[1], r.Inv[2]
-	var sx, sy, sz uint = 0, 2, 4
-	if ix < 0 {
-		sx = 1
-	}
-	if iy < 0 {
-		sy = 3
-	}
-	if iz < 0 {
-		sz = 5
-	}
+	lx, hx := rows(ix, 0)
+	ly, hy := rows(iy, 16)
+	lz, hz := rows(iz, 32)
+	base := unsafe.Pointer(&pairs[0])
 	tMin, tMax := order(r.TMin), order(best.T)
 	top := uint(0)
 	at := uint32(0)
 	for {
 		for at < leafBit {
-			p := &pairs[at]
-			lx, ly, lz := &p[sx&7], &p[sy&7], &p[sz&7]
-			hx, hy, hz := &p[(sx^1)&7], &p[(sy^1)&7], &p[(sz^1)&7]
-			enter0 := max(tMin, order((lx[0]-nx)*ix), order((ly[0]-ny)*iy), order((lz[0]-nz)*iz))
-			leave0 := min(tMax, order((hx[0]-fx)*ix), order((hy[0]-fy)*iy), order((hz[0]-fz)*iz))
-			enter1 := max(tMin, order((lx[1]-nx)*ix), order((ly[1]-ny)*iy), order((lz[1]-nz)*iz))
-			leave1 := min(tMax, order((hx[1]-fx)*ix), order((hy[1]-fy)*iy), order((hz[1]-fz)*iz))
-			c0, c1 := math.Float32bits(p[6][0]), math.Float32bits(p[6][1])
+			p := unsafe.Add(base, uintptr(at)*64)
+			enter0 := max(tMin, order((at32(p, lx)-nx)*ix), order((at32(p, ly)-ny)*iy), order((at32(p, lz)-nz)*iz))
+			leave0 := min(tMax, order((at32(p, hx)-fx)*ix), order((at32(p, hy)-fy)*iy), order((at32(p, hz)-fz)*iz))
+			q := unsafe.Add(p, 4)
+			enter1 := max(tMin, order((at32(q, lx)-nx)*ix), order((at32(q, ly)-ny)*iy), order((at32(q, lz)-nz)*iz))
+			leave1 := min(tMax, order((at32(q, hx)-fx)*ix), order((at32(q, hy)-fy)*iy), order((at32(q, hz)-fz)*iz))
+			c0, c1 := *(*uint32)(unsafe.Add(p, 48)), *(*uint32)(unsafe.Add(p, 52))
 			if enter0 <= leave0 {
 				at = c0
 				if enter1 <= leave1 {
@@ -81,29 +85,22 @@ func walkOccluded(pairs []pair, tris []tri.Triangle, stack *pairStack, r *tri.Ra
 	nx, ny, nz := r.Near[0], r.Near[1], r.Near[2]
 	fx, fy, fz := r.Far[0], r.Far[1], r.Far[2]
 	ix, iy, iz := r.Inv[0], r.Inv[1], r.Inv[2]
-	var sx, sy, sz uint = 0, 2, 4
-	if ix < 0 {
-		sx = 1
-	}
-	if iy < 0 {
-		sy = 3
-	}
-	if iz < 0 {
-		sz = 5
-	}
+	lx, hx := rows(ix, 0)
+	ly, hy := rows(iy, 16)
+	lz, hz := rows(iz, 32)
+	base := unsafe.Pointer(&pairs[0])
 	tMin, tMax := order(r.TMin), order(r.TMax)
 	top := uint(0)
 	at := uint32(0)
 	for {
 		for at < leafBit {
-			p := &pairs[at]
-			lx, ly, lz := &p[sx&7], &p[sy&7], &p[sz&7]
-			hx, hy, hz := &p[(sx^1)&7], &p[(sy^1)&7], &p[(sz^1)&7]
-			enter0 := max(tMin, order((lx[0]-nx)*ix), order((ly[0]-ny)*iy), order((lz[0]-nz)*iz))
-			leave0 := min(tMax, order((hx[0]-fx)*ix), order((hy[0]-fy)*iy), order((hz[0]-fz)*iz))
-			enter1 := max(tMin, order((lx[1]-nx)*ix), order((ly[1]-ny)*iy), order((lz[1]-nz)*iz))
-			leave1 := min(tMax, order((hx[1]-fx)*ix), order((hy[1]-fy)*iy), order((hz[1]-fz)*iz))
-			c0, c1 := math.Float32bits(p[6][0]), math.Float32bits(p[6][1])
+			p := unsafe.Add(base, uintptr(at)*64)
+			enter0 := max(tMin, order((at32(p, lx)-nx)*ix), order((at32(p, ly)-ny)*iy), order((at32(p, lz)-nz)*iz))
+			leave0 := min(tMax, order((at32(p, hx)-fx)*ix), order((at32(p, hy)-fy)*iy), order((at32(p, hz)-fz)*iz))
+			q := unsafe.Add(p, 4)
+			enter1 := max(tMin, order((at32(q, lx)-nx)*ix), order((at32(q, ly)-ny)*iy), order((at32(q, lz)-nz)*iz))
+			leave1 := min(tMax, order((at32(q, hx)-fx)*ix), order((at32(q, hy)-fy)*iy), order((at32(q, hz)-fz)*iz))
+			c0, c1 := *(*uint32)(unsafe.Add(p, 48)), *(*uint32)(unsafe.Add(p, 52))
 			if enter0 <= leave0 {
 				at = c0
 				if enter1 <= leave1 {

@@ -16,7 +16,7 @@ func Closest(r *Ray, ts []Triangle, best *Best) {
 		u := float32(cx*by) - float32(cy*bx)
 		v := float32(ax*cy) - float32(ay*cx)
 		w := float32(bx*ay) - float32(by*ax)
-		if mixed(u, v, w) {
+		if opposed(u, v, w) || mixed(u, v, w) {
 			continue
 		}
 		if u == 0 || v == 0 || w == 0 {
@@ -51,7 +51,7 @@ func Any(r *Ray, ts []Triangle) bool {
 		u := float32(cx*by) - float32(cy*bx)
 		v := float32(ax*cy) - float32(ay*cx)
 		w := float32(bx*ay) - float32(by*ax)
-		if mixed(u, v, w) {
+		if opposed(u, v, w) || mixed(u, v, w) {
 			continue
 		}
 		if u == 0 || v == 0 || w == 0 {
@@ -67,6 +67,13 @@ func Any(r *Ray, ts []Triangle) bool {
 		}
 	}
 	return false
+}
+
+// opposed reports whether two of the signs differ though none of the values is 0; it may miss that if their product underflows. Triangles
+// that a ray passes by mostly end here.
+func opposed(u, v, w float32) bool {
+	bu, bv, bw := int32(math.Float32bits(u)), int32(math.Float32bits(v)), int32(math.Float32bits(w))
+	return ((bu^bv)|(bu^bw)) < 0 && u*v*w != 0
 }
 
 // mixed reports whether the edge functions have both signs, which means a miss, or one is NaN.

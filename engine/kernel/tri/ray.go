@@ -40,45 +40,52 @@ type Ray struct {
 // corner of bounds. The two plane distances that a box test compares carry 3u each, another 6u·reach. 32u covers both
 // and leaves room for the second-order terms.
 func (p *Ray) Prepare(r geom.Ray, bounds geom.Box) bool {
-	tMin := max(r.TMin, 0)
+	tMin := r.TMin
+	if tMin <= 0 {
+		tMin = 0 // also where it is -0
+	}
 	if !(tMin < r.TMax) || !r.Org.Finite() || !r.Dir.Finite() {
 		return false
 	}
-	org := [3]float32{r.Org.X, r.Org.Y, r.Org.Z}
-	dir := [3]float32{r.Dir.X, r.Dir.Y, r.Dir.Z}
-	ax, ay, az := abs(dir[0]), abs(dir[1]), abs(dir[2])
-	kz, longest := uint32(2), az
-	if ax >= ay && ax >= az {
-		kz, longest = 0, ax
-	} else if ay >= az {
-		kz, longest = 1, ay
-	}
+	ax, ay, az := abs(r.Dir.X), abs(r.Dir.Y), abs(r.Dir.Z)
+	longest := larger(ax, larger(ay, az))
 	if longest == 0 {
 		return false
 	}
-	lo := [3]float32{bounds.Min.X, bounds.Min.Y, bounds.Min.Z}
-	hi := [3]float32{bounds.Max.X, bounds.Max.Y, bounds.Max.Z}
-	var reach, far float32
-	for k := range 3 {
-		reach = max(reach, abs(lo[k]-org[k]), abs(hi[k]-org[k]))
-		far = max(far, abs(org[k]))
-	}
+	lo, hi := bounds.Min, bounds.Max
+	reach := larger(larger(larger(abs(lo.X-r.Org.X), abs(hi.X-r.Org.X)), larger(abs(lo.Y-r.Org.Y), abs(hi.Y-r.Org.Y))),
+		larger(abs(lo.Z-r.Org.Z), abs(hi.Z-r.Org.Z)))
+	far := larger(abs(r.Org.X), larger(abs(r.Org.Y), abs(r.Org.Z)))
 	margin := float32(reach*marginReach) + float32(far*marginOrigin)
-	least := max(longest*flattest, smallest)
-	for k := range 3 {
-		d := float32(math.Copysign(float64(max(abs(dir[k]), least)), float64(dir[k])))
-		m := float32(math.Copysign(float64(margin), float64(dir[k])))
-		p.Org[k], p.Near[k], p.Far[k], p.Inv[k] = org[k], org[k]+m, org[k]-m, 1/d
+	least := larger(longest*flattest, smallest)
+	mx, my, mz := signed(margin, r.Dir.X), signed(margin, r.Dir.Y), signed(margin, r.Dir.Z)
+	p.Org = [4]float32{r.Org.X, r.Org.Y, r.Org.Z}
+	p.Near = [4]float32{r.Org.X + mx, r.Org.Y + my, r.Org.Z + mz}
+	p.Far = [4]float32{r.Org.X - mx, r.Org.Y - my, r.Org.Z - mz}
+	p.Inv = [4]float32{1 / signed(larger(ax, least), r.Dir.X), 1 / signed(larger(ay, least), r.Dir.Y), 1 / signed(larger(az, least), r.Dir.Z)}
+	switch {
+	case ax >= ay && ax >= az:
+		p.KX, p.KY, p.KZ = 1, 2, 0
+		p.Shear = [3]float32{r.Dir.Y / r.Dir.X, r.Dir.Z / r.Dir.X, 1 / r.Dir.X}
+	case ay >= az:
+		p.KX, p.KY, p.KZ = 2, 0, 1
+		p.Shear = [3]float32{r.Dir.Z / r.Dir.Y, r.Dir.X / r.Dir.Y, 1 / r.Dir.Y}
+	default:
+		p.KX, p.KY, p.KZ = 0, 1, 2
+		p.Shear = [3]float32{r.Dir.X / r.Dir.Z, r.Dir.Y / r.Dir.Z, 1 / r.Dir.Z}
 	}
-	kx := next(kz)
-	ky := next(kx)
-	p.KX, p.KY, p.KZ = kx, ky, kz
-	p.Shear = [3]float32{dir[kx] / dir[kz], dir[ky] / dir[kz], 1 / dir[kz]}
 	p.TMin, p.TMax = tMin, r.TMax
 	return true
 }
 
-// next is the next axis in cyclic order.
-func next(k uint32) uint32 { return (k + 1) % 3 }
-
 func abs(x float32) float32 { return math.Float32frombits(math.Float32bits(x) &^ (1 << 31)) }
+
+// signed is the magnitude m >= +0 with the sign of s.
+func signed(m, s float32) float32 {
+	return math.Float32frombits(math.Float32bits(m) | math.Float32bits(s)&(1<<31))
+}
+
+// larger is the maximum of two values >= +0, which integers order as floats do. The built-in max must think of NaN and -0.
+func larger(a, b float32) float32 {
+	return math.Float32frombits(max(math.Float32bits(a), math.Float32bits(b)))
+}
