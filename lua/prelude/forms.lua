@@ -2,57 +2,70 @@
 local keys = require "keys"
 local forms = {}
 
-local function is_corner(a, b)
-  for i = 1, #a do
-    if a[i] ~= b[i] then return false end
+local function same(p, q)
+  for i = 1, #p do
+    if p[i] ~= q[i] then return false end
   end
   return true
 end
 
---- One piece of a centripetal Catmull-Rom curve, from b to c, u in [0, 1] (Barry & Goldman 1988; centripetal: Yuksel et al. 2011,
---- which makes neither loops nor bulges where points lie close together).
-local function between(a, b, c, d, u)
-  local function gap(p, q)
-    local sum = 0
-    for i = 1, #p do sum = sum + (p[i] - q[i]) ^ 2 end
-    return math.max(1e-9, math.sqrt(math.sqrt(sum)))
+local function far(p, q)
+  local sum = 0
+  for i = 1, #p do sum = sum + (p[i] - q[i]) ^ 2 end
+  return math.sqrt(sum)
+end
+
+--- The natural cubic spline through the points of one run (de Boor 1978, ch. IV), with square roots of chord lengths as its parameter,
+--- which keeps it from bulging where long pieces meet short ones (Lee 1989). Its curvature has no steps: a glossy surface would show
+--- them. Appends all but the first point to out.
+local function spline(run, pieces, out)
+  local n, dim, h = #run, #run[1], {}
+  for i = 1, n - 1 do h[i] = math.sqrt(far(run[i], run[i + 1])) end
+  local second = {} -- second derivatives at the points, by coordinate; zero at both ends
+  for axis = 1, dim do
+    local m, upper, right = { [1] = 0, [n] = 0 }, { [1] = 0 }, { [1] = 0 }
+    for i = 2, n - 1 do
+      local slopes = (run[i + 1][axis] - run[i][axis]) / h[i] - (run[i][axis] - run[i - 1][axis]) / h[i - 1]
+      local pivot = 2 * (h[i - 1] + h[i]) - h[i - 1] * upper[i - 1]
+      upper[i], right[i] = h[i] / pivot, (6 * slopes - h[i - 1] * right[i - 1]) / pivot
+    end
+    for i = n - 1, 2, -1 do m[i] = right[i] - upper[i] * m[i + 1] end
+    second[axis] = m
   end
-  local t1 = gap(a, b)
-  local t2 = t1 + gap(b, c)
-  local t3 = t2 + gap(c, d)
-  local t = t1 + u * (t2 - t1)
-  local out = {}
-  for i = 1, #b do
-    local function mix(x, y, from, to) return (x * (to - t) + y * (t - from)) / (to - from) end
-    local p, q, r = mix(a[i], b[i], 0, t1), mix(b[i], c[i], t1, t2), mix(c[i], d[i], t2, t3)
-    out[i] = keys.round(mix(mix(p, q, 0, t2), mix(q, r, t1, t3), t1, t2))
+  for i = 1, n - 1 do
+    for k = 1, pieces - 1 do
+      local b = k / pieces
+      local a, p = 1 - b, {}
+      for axis = 1, dim do
+        local m = second[axis]
+        p[axis] = keys.round(a * run[i][axis] + b * run[i + 1][axis] + ((a ^ 3 - a) * m[i] + (b ^ 3 - b) * m[i + 1]) * h[i] ^ 2 / 6)
+      end
+      if dim == 2 and p[1] < 0 then p[1] = 0 end -- a profile does not cross the axis
+      out[#out + 1] = p
+    end
+    out[#out + 1] = run[i + 1]
   end
-  return out
 end
 
 --- A smooth curve through points {r, y} or {x, y, z}, as a list of points for mesh.lathe or forms.tube. A point given twice in a row
---- stays a corner. steps is how many pieces lie between two points, 1 to 64; default 8.
-function forms.smooth(points, steps)
-  steps = steps or 8
+--- stays a corner; two points alone between corners are a straight line. pieces is how many there are between two points, 1 to 64;
+--- default 8.
+function forms.smooth(points, pieces)
+  pieces = pieces or 8
   if type(points) ~= "table" or #points < 2 then error("forms.smooth: takes a list of at least 2 points", 0) end
-  if type(steps) ~= "number" or steps < 1 or steps > 64 then error("forms.smooth: steps must be a number 1 to 64", 0) end
-  local function beyond(p, q) -- the point as far behind q as p lies before it
-    local out = {}
-    for i = 1, #p do out[i] = 2 * q[i] - p[i] end
-    return out
+  if type(pieces) ~= "number" or pieces < 1 or pieces > 64 then error("forms.smooth: pieces must be a number 1 to 64", 0) end
+  for i, p in ipairs(points) do
+    local good = type(p) == "table" and (#p == 2 or #p == 3) and #p == #points[1]
+    for k = 1, good and #p or 0 do good = good and type(p[k]) == "number" and p[k] == p[k] and math.abs(p[k]) < 1e6 end
+    if not good then error("forms.smooth: point " .. i .. " must be {r, y}, or {x, y, z} if all are, in metres", 0) end
   end
-  local out = { points[1] }
-  for i = 1, #points - 1 do
-    local b, c = points[i], points[i + 1]
-    if not is_corner(b, c) then
-      local a, d = points[i - 1], points[i + 2]
-      if not a or is_corner(a, b) then a = beyond(c, b) end
-      if not d or is_corner(c, d) then d = beyond(b, c) end
-      for k = 1, steps do
-        local p = k < steps and between(a, b, c, d, k / steps) or c
-        if #p == 2 then p = { math.max(0, p[1]), p[2] } end -- a profile does not cross the axis
-        out[#out + 1] = p
-      end
+  local out, run = { points[1] }, { points[1] }
+  for i = 2, #points do
+    local corner = same(points[i - 1], points[i])
+    if not corner then run[#run + 1] = points[i] end
+    if (corner or i == #points) and #run > 1 then
+      spline(run, #run == 2 and 1 or pieces, out)
+      run = { points[i] }
     end
   end
   return out

@@ -81,22 +81,22 @@ end
 ---   ratio      key : fill, the key's illuminance at the centre over the fill's, each measured facing it, >= 1; default 4, two stops.
 ---              Beware: some write (key + fill) : fill, what the lit side gets over what the shaded side gets; 4 here is 5 there
 ---   key_side   degrees, -90 to 90, less than 0 is left; default -40. 30 to 45 is usual
----   key_up     degrees, 0 to 85; default 42. 30 to 45 is usual
----   softness   edge of the key, in radii: 0.2 is nearly hard, 6 wraps round, 0.05 to 20; default 3.5. It stands 6 radii away
----   rim        illuminance of the rim over the key's, 0 for none, at most 8; default 0.8
+---   key_up     degrees, 0 to 85; default 40. 30 to 45 is usual
+---   softness   width of the key in radii, 0.05 to 20: 0.2 is nearly hard, 6 wraps round; default 3. It is 1.4 times as high, 6 radii away
+---   rim        illuminance of the rim over the key's, 0 for none, at most 8; default 0.5
 ---   room       ambient light as a share of the key, 0 to 1; default 0.12
 function rigs.three_point(given)
   local o = read("rigs.three_point", given, {
     ratio = { 4, low = 1, high = 1000 }, key_side = { -40, low = -90, high = 90, unit = "degrees" },
-    key_up = { 42, low = 0, high = 85, unit = "degrees" }, softness = { 3.5, low = 0.05, high = 20, unit = "radii" },
-    rim = { 0.8, low = 0, high = 8 }, room = { 0.12, low = 0, high = 1 },
+    key_up = { 40, low = 0, high = 85, unit = "degrees" }, softness = { 3, low = 0.05, high = 20, unit = "radii" },
+    rim = { 0.5, low = 0, high = 8 }, room = { 0.12, low = 0, high = 1 },
   })
   local other = o.key_side < 0 and 1 or -1
-  local key = softbox(o, "key", { side = o.key_side, up = o.key_up, distance = 6, width = o.softness, height = o.softness })
+  local key = softbox(o, "key", { side = o.key_side, up = o.key_up, distance = 6, width = o.softness, height = 1.4 * o.softness })
   local fill = softbox(o, "fill", { side = other * 50, up = 28, distance = 7, width = 5, height = 5 })
   local lights = { delivering(o, key, o.lux), delivering(o, fill, o.lux / o.ratio) }
   if o.rim > 0 then
-    local rim = softbox(o, "rim", { side = other * 150, up = 38, distance = 6, width = 1.2, height = 4 })
+    local rim = softbox(o, "rim", { side = other * 155, up = 52, distance = 6, width = 2, height = 3 })
     lights[#lights + 1] = delivering(o, rim, o.lux * o.rim)
   end
   lights[#lights + 1] = room(o.room, o.lux)

@@ -8,10 +8,10 @@
 ---   name             specular   shininess   default colour   reads as
 ---   bisque           0.02       6           #c98f6b          fired, unglazed, dry
 ---   stoneware        0.035      14          #8a7a68          vitrified clay, the sheen of a skin
----   porcelain        0.05       900         #e9e6df          white, thin, sharp small lights
+---   porcelain        0.05       320         #e9e6df          white, thin, sharp small lights
 ---   matt_glaze       0.03       10          #b9b2a3          soft broad sheen
 ---   satin_glaze      0.045      45          #9fc3a4          the window is a soft patch
----   gloss_glaze      0.06       700         #6d1a1a          the window is seen, with edges
+---   gloss_glaze      0.06       260         #6d1a1a          the window is seen, with edges
 ---   metallic_glaze   0.30       60          #3b352f          iron-black, half a mirror
 ---   brass            0.62       180         #d9a441          scatters little, reflects its own colour
 ---   blackened_steel  0.12       40          #26272a          lamp feet and arms
@@ -28,10 +28,10 @@ end
 
 surfaces.bisque = surface("#c98f6b", 0.02, 6)
 surfaces.stoneware = surface("#8a7a68", 0.035, 14)
-surfaces.porcelain = surface("#e9e6df", 0.05, 900)
+surfaces.porcelain = surface("#e9e6df", 0.05, 320)
 surfaces.matt_glaze = surface("#b9b2a3", 0.03, 10)
 surfaces.satin_glaze = surface("#9fc3a4", 0.045, 45)
-surfaces.gloss_glaze = surface("#6d1a1a", 0.06, 700)
+surfaces.gloss_glaze = surface("#6d1a1a", 0.06, 260)
 surfaces.metallic_glaze = surface("#3b352f", 0.30, 60)
 surfaces.blackened_steel = surface("#26272a", 0.12, 40)
 surfaces.paper_shade = surface("#f0e6d2", 0.015, 4)
