@@ -113,8 +113,7 @@ func made(p *model.Plan, h *model.Hasher, i int) encode.Options {
 			{Key: "frame", Value: f.Name},
 			{Key: "tags", Value: strings.Join(tags, "\n")},
 			{Key: "frameHash", Value: h.Frame(i).String()},
-			{Key: "settings", Value: fmt.Sprintf("%d × %d pixels, %d camera rays a pixel, %d shadow rays a camera ray and area light, seed %d",
-				s.Width, s.Height, s.Samples, s.LightSamples, s.Seed)},
+			{Key: "settings", Value: fmt.Sprintf("size=%dx%d\nsamples=%d\nlight_samples=%d\nseed=%d", s.Width, s.Height, s.Samples, s.LightSamples, s.Seed)},
 		},
 		Numbers: []encode.KeyNumber{{Key: "exposure", Value: float32(s.Exposure)}},
 	}

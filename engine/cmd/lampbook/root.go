@@ -36,15 +36,33 @@ becomes a picture, and labelled contact sheets collect them.`,
 		return err
 	})
 	root.SetFlagErrorFunc(flagError)
-	root.SetHelpCommand(&cobra.Command{Hidden: true, Use: "no-help"})
+	root.SetHelpCommand(newHelp())
+	root.InitDefaultHelpCmd()
 	root.InitDefaultCompletionCmd()
 	for _, c := range root.Commands() {
+		c.DisableFlagsInUseLine = true // each says itself where its options go
+		c.Flags().BoolP("help", "h", false, "says this")
 		if c.Name() == "completion" {
 			c.Short = "Prints a script that completes options and names in your shell"
 			c.Long = "Prints a script that lets your shell complete commands, options and file names.\nThe help of each shell's command says where the script goes."
 		}
 	}
 	return root
+}
+
+// newHelp makes "lampbook help COMMAND", which says what "lampbook COMMAND --help" does.
+func newHelp() *cobra.Command {
+	return &cobra.Command{
+		Use:   "help COMMAND",
+		Short: "Says more about a command",
+		RunE: func(cmd *cobra.Command, args []string) error {
+			about, rest, err := cmd.Root().Find(args)
+			if err != nil || len(rest) > 0 {
+				return wrongf("unknown command %q%s; see lampbook --help", strings.Join(args, " "), didYouMean(strings.Join(args, " "), commandNames(cmd.Root())))
+			}
+			return about.Help()
+		},
+	}
 }
 
 // commandNames lists the commands that a user may type.

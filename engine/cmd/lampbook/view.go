@@ -99,8 +99,8 @@ func (v *view) progress() {
 		left, _ := v.meter.left(elapsed)
 		v.emit(progressLine{"progress", v.meter.finished, v.meter.frames, v.meter.rays, elapsed.Seconds(), left.Seconds()})
 	case v.bar != nil:
-		_ = v.bar.Set64(min(int64(v.meter.share()*barSteps), barSteps-1))
 		v.bar.Describe(v.meter.line(elapsed))
+		_ = v.bar.Set64(min(int64(v.meter.share()*barSteps), barSteps-1)) // the last step would end the bar
 	case !v.quiet:
 		fmt.Fprintln(v.errs, v.meter.line(elapsed))
 	}
