@@ -29,7 +29,8 @@ const beforeLight = 1 - 1.0/(1<<14)
 func (c *cast) aimShadows(w *worker, px sample.Pixel, l int) {
 	cl := &c.lights[l]
 	stream := px.For(cl.purpose, c.settings.Samples*cl.rays)
-	w.shadows, w.shots = w.shadows[:0], w.shots[:0]
+	w.shadows, w.shots = grow(w.shadows, len(w.points)*cl.rays), grow(w.shots, len(w.points)*cl.rays)
+	aimed := 0
 	share := 1 / float32(cl.rays)
 	var q lamp.Prepared
 	delta := cl.lamp.Delta()
@@ -58,10 +59,12 @@ func (c *cast) aimShadows(w *worker, px sample.Pixel, l int) {
 			if !(nl > 0 && weight > 0) {
 				continue
 			}
-			w.shadows = append(w.shadows, shadowRay{wi: wi, weight: weight, nl: nl, point: int32(i), number: number})
-			w.shots = append(w.shots, geom.Ray{Org: pt.shadow, Dir: wi, TMax: dist * beforeLight})
+			w.shadows[aimed] = shadowRay{wi: wi, weight: weight, nl: nl, point: int32(i), number: number}
+			w.shots[aimed] = geom.Ray{Org: pt.shadow, Dir: wi, TMax: dist * beforeLight}
+			aimed++
 		}
 	}
+	w.shadows, w.shots = w.shadows[:aimed], w.shots[:aimed]
 }
 
 // occluded tells which of w.shots are stopped on their way to light l.

@@ -1,6 +1,8 @@
 package render
 
 import (
+	"math"
+
 	"lampbook/engine/kernel/bvh"
 	"lampbook/engine/kernel/geom"
 )
@@ -88,6 +90,10 @@ func (pl *placed) direction(v geom.Vec3) geom.Vec3 {
 
 func (pl *placed) normal(n geom.Vec3) geom.Vec3 {
 	if pl.identity {
+		// Twice the area of a tiny triangle, squared, falls below what float32 holds.
+		if l2 := n.Dot(n); l2 > 1e-30 && l2 < 1e30 {
+			return n.Scale(1 / float32(math.Sqrt(float64(l2))))
+		}
 		return n.Wide().Unit().Narrow()
 	}
 	return pl.worldFromObject.Normal(n.Wide()).Scale(pl.mirror).Unit().Narrow()
