@@ -14,7 +14,7 @@ import (
 // "a < b" means b may import a, and by transitivity whatever a may import. Lines end with ";".
 // Command packages and test files may import everything; external modules are not in question here.
 const importPolicy = `
-	geom, num < sample, tri, tint;
+	num < geom < sample, tri, tint;
 	geom, tri < bvh;
 	geom, num, sample, tint < shade, lamp;
 	geom, tint < model;

@@ -101,8 +101,9 @@ func Fit(f FitSpec) (model.Camera, error) {
 		ez = min(ez, near-1e-3*radius) // a single point, or a flat thing edge on, still stands in front of the camera
 	}
 	eye := right.Scale(ex).Add(upward.Scale(ey)).Add(forward.Scale(ez))
-	cam.Position = arr(eye)
-	cam.Target = arr(eye.Add(forward.Scale(max(zMiddle-ez, 1e-3*radius))))
+	cam.Position = settledPoint(eye, radius)
+	cam.Target = settledPoint(eye.Add(forward.Scale(max(zMiddle-ez, 1e-3*radius))), radius)
+	cam.Height = settled(cam.Height)
 	return cam, nil
 }
 

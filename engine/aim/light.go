@@ -43,7 +43,7 @@ func PowerToIntensity(l model.Light, lumens float64) (float64, error) {
 	if !ok || spec.Kind == lamp.Directional {
 		return 0, errors.New("power is for lights with a place (point, spot, area); give intensity")
 	}
-	return lamp.IntensityFromPower(spec, lumens), nil
+	return settled(lamp.IntensityFromPower(spec, lumens)), nil
 }
 
 // Meter reads the lights as an incident light meter does: it returns the exposure, in stops, that shows an 18 % grey card at a point,
@@ -82,7 +82,7 @@ func Meter(lights []model.Light, at, facing [3]float64) (stops float64, err erro
 	if math.IsInf(level, 0) {
 		return 0, fmt.Errorf("the light at %v is without bound", at)
 	}
-	return -math.Log2(level), nil
+	return settled(-math.Log2(level)), nil
 }
 
 func luminance(c tint.RGB) float64 {
@@ -92,10 +92,10 @@ func luminance(c tint.RGB) float64 {
 // TurnLights returns the lights turned about the vertical through the origin, by degrees, counter-clockwise seen from above.
 func TurnLights(lights []model.Light, deg float64) []model.Light {
 	turn := geom.Turn(geom.Vec3d{Y: deg})
+	point := func(p [3]float64) [3]float64 { return settledPoint(turn.Point(vec(p)), vec(p).Len()) }
 	out := make([]model.Light, len(lights))
 	for i, l := range lights {
-		l.Position, l.Target = arr(turn.Point(vec(l.Position))), arr(turn.Point(vec(l.Target)))
-		l.Direction, l.Up = arr(turn.Dir(vec(l.Direction))), arr(turn.Dir(vec(l.Up)))
+		l.Position, l.Target, l.Direction, l.Up = point(l.Position), point(l.Target), point(l.Direction), point(l.Up)
 		out[i] = l
 	}
 	return out
@@ -110,14 +110,14 @@ func DefaultLights(centre [3]float64, radius float64) []model.Light {
 	const distance, edge = 5.0, 3.0 // in radii
 	key := model.Light{
 		Name: "key", Kind: model.LightArea, Shape: model.AreaRectangle, Color: tint.Grey(1),
-		Position: arr(c.Add(away.Scale(distance * radius))), Target: centre, Up: [3]float64{0, 1, 0},
+		Position: settledPoint(c.Add(away.Scale(distance*radius)), radius), Target: centre, Up: [3]float64{0, 1, 0},
 		Width: edge * radius, Height: edge * radius,
 		Components: model.Components{Diffuse: tint.Grey(1), Specular: tint.Grey(1)},
 	}
 	spec, _ := LampSpec(key)
 	lp := lamp.New(spec)
 	const keyLux = 1000
-	key.Intensity = keyLux / lp.Irradiance(c, away)
+	key.Intensity = settled(keyLux / lp.Irradiance(c, away))
 	return []model.Light{key, {
 		Name: "room", Kind: model.LightAmbient, Color: tint.Grey(1), Intensity: keyLux / math.Pi / 3,
 		Components: model.Components{Diffuse: tint.Grey(1), Specular: tint.Grey(1), Ambient: tint.Grey(1)},

@@ -1,6 +1,9 @@
 package aim
 
 import (
+	"math"
+	"strconv"
+
 	"lampbook/engine/kernel/geom"
 	"lampbook/engine/mesh"
 	"lampbook/engine/model"
@@ -48,6 +51,27 @@ func Bounds(things []Thing) (centre [3]float64, radius float64) {
 		return centre, 0
 	}
 	return arr(box.Centre().Wide()), box.Size().Wide().Len() / 2
+}
+
+// settled rounds x to 12 significant digits. Logarithms and sines may differ in their last bit from one machine to another; what aim
+// works out becomes part of the plan, and the plan must not.
+func settled(x float64) float64 {
+	if y, err := strconv.ParseFloat(strconv.FormatFloat(x, 'g', 12, 64), 64); err == nil {
+		return y
+	}
+	return x // not finite
+}
+
+// settledPoint is settled, for each coordinate; what is nothing beside size becomes 0.
+func settledPoint(v geom.Vec3d, size float64) [3]float64 {
+	p := arr(v)
+	for i := range p {
+		p[i] = settled(p[i])
+		if math.Abs(p[i]) < 1e-12*size {
+			p[i] = 0
+		}
+	}
+	return p
 }
 
 func vec(a [3]float64) geom.Vec3d { return geom.Vec3d{X: a[0], Y: a[1], Z: a[2]} }

@@ -9,6 +9,7 @@ import (
 	"lampbook/engine/kernel/bvh"
 	"lampbook/engine/kernel/geom"
 	"lampbook/engine/kernel/lamp"
+	"lampbook/engine/kernel/num"
 	"lampbook/engine/kernel/sample"
 	"lampbook/engine/kernel/shade"
 	"lampbook/engine/kernel/tint"
@@ -155,7 +156,7 @@ func (c *cast) addLook(p *model.Plan, i int) {
 	f := &p.Frames[i]
 	lk := look{
 		frame: i, settings: f.Settings,
-		exposure: float32(math.Exp2(f.Settings.Exposure)),
+		exposure: num.Exp2Wide(f.Settings.Exposure),
 		emission: tint.Grey(1),
 	}
 	for k, t := range f.Things {

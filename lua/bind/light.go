@@ -1,7 +1,6 @@
 package bind
 
 import (
-	"math"
 	"slices"
 
 	lua "github.com/yuin/gopher-lua"
@@ -232,7 +231,7 @@ func (a *args) scaleTo(l *light) {
 		}
 		l.Intensity = i
 	}
-	l.Intensity *= math.Exp2(l.stops)
+	l.Intensity = aim.Brighter(l.Intensity, l.stops)
 	if !(l.Intensity <= maxIntensity*maxIntensity) {
 		a.failf("the light would emit %s %s: no more than %s is accepted", number(l.Intensity), lightUnits[l.Kind], number(maxIntensity*maxIntensity))
 	}

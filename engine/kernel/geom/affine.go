@@ -1,6 +1,10 @@
 package geom
 
-import "math"
+import (
+	"math"
+
+	"lampbook/engine/kernel/num"
+)
 
 // Vec3d is a point, direction or normal in float64, for what sets a scene up.
 type Vec3d struct{ X, Y, Z float64 }
@@ -100,7 +104,7 @@ func sinCosDeg(deg float64) (sin, cos float64) {
 	case 270:
 		return -1, 0
 	}
-	return math.Sincos(r * math.Pi / 180)
+	return num.SinCosWide(float64(r * (math.Pi / 180)))
 }
 
 // Mul returns the map that applies b first, then a.

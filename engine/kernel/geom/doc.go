@@ -2,5 +2,5 @@
 //
 // What is walked or shaded is float32 (Vec3, Ray, Box); what sets a scene up is float64 (Vec3d, Affine).
 // Right-handed, Y up, metres. Everything passes by value and may be shared among goroutines.
-// May import: nothing. Start at Vec3, then Affine.
+// May import: num. Start at Vec3, then Affine.
 package geom
