@@ -96,7 +96,7 @@ type frameForm struct {
 	Name       string        `json:"name"`
 	State      State         `json:"state"`
 	Reason     string        `json:"reason,omitempty"`
-	Tags       tagObject     `json:"tags"`
+	Tags       TagObject     `json:"tags"`
 	Hash       string        `json:"hash"`
 	Files      []string      `json:"files"`
 	Settings   *settingsForm `json:"settings"` // null where the frame has none, because it failed in the scene
@@ -149,10 +149,11 @@ type timesForm struct {
 	FrameSeconds numberObject `json:"frame_seconds"`
 }
 
-// tagObject is a JSON object that keeps the order of its tags.
-type tagObject []model.Tag
+// TagObject is a frame's tags as a JSON object that keeps their order and their types.
+type TagObject []model.Tag
 
-func (t tagObject) MarshalJSON() ([]byte, error) {
+// MarshalJSON writes {"gloss":16,"glaze":"slate"}.
+func (t TagObject) MarshalJSON() ([]byte, error) {
 	return object(len(t), func(i int) (string, any) {
 		switch v := t[i].Value; v.Kind {
 		case model.NumberValue:

@@ -10,6 +10,7 @@ import (
 	"lampbook/engine/model"
 	"lampbook/engine/render"
 	"lampbook/engine/run"
+	"lampbook/output/report"
 )
 
 func newPlan() *cobra.Command {
@@ -53,7 +54,7 @@ func plan(cmd *cobra.Command, r *request) error {
 		for _, k := range c.Frames {
 			sum.RaysAlone += total(render.Estimate(render.Cast{Plan: j.plan, Frames: []int{k}}))
 			f := &j.plan.Frames[k]
-			line := plannedLine{Event: "frame", Name: f.Name, Tags: tagsObject(f), Cast: i + 1}
+			line := plannedLine{Event: "frame", Name: f.Name, Tags: report.TagObject(f.Tags), Cast: i + 1}
 			for _, file := range filesOf(f, on[k]) {
 				line.Files = append(line.Files, file.name)
 			}
@@ -64,7 +65,7 @@ func plan(cmd *cobra.Command, r *request) error {
 	for i := range j.plan.Frames {
 		if f := &j.plan.Frames[i]; f.Failure != "" {
 			sum.Faulty++
-			v.emit(plannedLine{Event: "frame", Name: f.Name, Tags: tagsObject(f), Reason: f.Failure})
+			v.emit(plannedLine{Event: "frame", Name: f.Name, Tags: report.TagObject(f.Tags), Reason: f.Failure})
 		}
 	}
 	if faulty := faultyFrames(j.plan, func(i int) string { return j.plan.Frames[i].Failure }); len(faulty) > 0 {
@@ -87,12 +88,12 @@ func plan(cmd *cobra.Command, r *request) error {
 
 // plannedLine is the JSON line of a frame of a plan.
 type plannedLine struct {
-	Event  string   `json:"event"`
-	Name   string   `json:"name"`
-	Tags   tagList  `json:"tags"`
-	Cast   int      `json:"cast,omitempty"` // from 1
-	Files  []string `json:"files,omitempty"`
-	Reason string   `json:"reason,omitempty"` // why the frame would fail
+	Event  string           `json:"event"`
+	Name   string           `json:"name"`
+	Tags   report.TagObject `json:"tags"`
+	Cast   int              `json:"cast,omitempty"` // from 1
+	Files  []string         `json:"files,omitempty"`
+	Reason string           `json:"reason,omitempty"` // why the frame would fail
 }
 
 // planSummary is the last JSON line of a plan.

@@ -2,12 +2,15 @@ package main
 
 import (
 	"os"
+	"path/filepath"
 	"regexp"
 	"slices"
 	"strings"
 	"testing"
 
 	"github.com/spf13/pflag"
+
+	"lampbook/lua/host"
 )
 
 // TestReadmeListsEveryCommandAndOption holds the tables of README.md against the commands, both ways.
@@ -77,6 +80,34 @@ func TestDefaultFolder(t *testing.T) {
 		r := request{}
 		if err := r.accept(scene); err != nil || strings.ReplaceAll(r.out, "\\", "/") != want {
 			t.Errorf("%s: folder %q, error %v; want %q", scene, r.out, err, want)
+		}
+	}
+}
+
+// TestReadmeScene runs the first scene of README.md as a reader types it: its first four steps, and all of them.
+func TestReadmeScene(t *testing.T) {
+	text, err := os.ReadFile("../../../README.md")
+	if err != nil {
+		t.Fatal(err)
+	}
+	var steps []string
+	for _, m := range regexp.MustCompile("(?s)```lua\n(.*?)```").FindAllStringSubmatch(string(text), -1) {
+		steps = append(steps, m[1])
+	}
+	if len(steps) != 5 {
+		t.Fatalf("README.md has %d steps of Lua, want 5", len(steps))
+	}
+	for _, test := range []struct{ steps, frames int }{{4, 1}, {5, 10}} {
+		scene := filepath.Join(t.TempDir(), "cup.lua")
+		if err := os.WriteFile(scene, []byte(strings.Join(steps[:test.steps], "\n")), 0o666); err != nil {
+			t.Fatal(err)
+		}
+		plan, _, err := host.Evaluate(t.Context(), scene, host.Options{})
+		if err != nil {
+			t.Fatalf("the first %d steps: %v", test.steps, err)
+		}
+		if len(plan.Frames) != test.frames || len(plan.Sheets) != 1 || len(plan.Warnings) > 0 {
+			t.Errorf("the first %d steps: %d frames, %d sheets, remarks %v; want %d, 1, none", test.steps, len(plan.Frames), len(plan.Sheets), plan.Warnings, test.frames)
 		}
 	}
 }

@@ -104,17 +104,17 @@ func renderFrames(ctx context.Context, j *job, r *request, v *view, w *pictures)
 // frameLine is the JSON line of a frame that the sink has taken.
 func (w *pictures) frameLine(e run.Event) any {
 	f, o := &w.plan.Frames[e.Frame], &w.taken[e.Frame]
-	return frameLine{"frame", f.Name, tagsObject(f), string(o.state), o.failure, o.files, o.seconds}
+	return frameLine{"frame", f.Name, report.TagObject(f.Tags), string(o.state), o.failure, o.files, o.seconds}
 }
 
 type frameLine struct {
-	Event   string   `json:"event"`
-	Name    string   `json:"name"`
-	Tags    tagList  `json:"tags"`
-	State   string   `json:"state"`            // "done" or "failed"
-	Reason  string   `json:"reason,omitempty"` // why it failed
-	Files   []string `json:"files,omitempty"`  // relative to the run's folder
-	Seconds float64  `json:"seconds"`          // its share of its cast
+	Event   string           `json:"event"`
+	Name    string           `json:"name"`
+	Tags    report.TagObject `json:"tags"`
+	State   string           `json:"state"`            // "done" or "failed"
+	Reason  string           `json:"reason,omitempty"` // why it failed
+	Files   []string         `json:"files,omitempty"`  // relative to the run's folder
+	Seconds float64          `json:"seconds"`          // its share of its cast
 }
 
 // endOf is the last JSON line of a run.
