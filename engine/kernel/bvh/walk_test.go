@@ -65,8 +65,8 @@ func drawMap(t *rapid.T) geom.Affine {
 	return geom.Translate(geom.Vec3d{X: move.Draw(t, "dx"), Y: move.Draw(t, "dy"), Z: move.Draw(t, "dz")}).Mul(a)
 }
 
-// place makes a scene and its reference from the same placements, with one tree for each mesh.
-func place(wide bool, ps []refPlacement) *Scene {
+// sceneOf makes a scene and its reference from the same placements, with one tree for each mesh.
+func sceneOf(wide bool, ps []refPlacement) *Scene {
 	trees := map[*refMesh]*Tree{}
 	var out []Placement
 	for _, p := range ps {
@@ -112,7 +112,7 @@ func TestOneMeshAgainstEveryTriangle(t *testing.T) {
 			}
 		}
 		for name, wide := range walks() {
-			agree(t, name, place(wide, ps), ps, SeenByCamera, rays, want)
+			agree(t, name, sceneOf(wide, ps), ps, SeenByCamera, rays, want)
 		}
 	})
 	if hit < cast/10 || hit > cast*9/10 {
@@ -145,7 +145,7 @@ func TestPlacementsAgainstEveryTriangle(t *testing.T) {
 			}
 		}
 		for name, wide := range walks() {
-			agree(t, name, place(wide, ps), ps, mask, rays, want)
+			agree(t, name, sceneOf(wide, ps), ps, mask, rays, want)
 		}
 	})
 	if hit < cast/10 || hit > cast*9/10 {
