@@ -55,9 +55,8 @@ type worker struct {
 	stats   Stats      // rays cast so far
 }
 
-// shadowRay is the light that a shadow ray carries if nothing stops it.
+// shadowRay is the light that a shadow ray carries if nothing stops it; worker.shots has the ray.
 type shadowRay struct {
-	wi     geom.Vec3
 	weight float32 // E0 of the unit light, divided by the light's rays
 	nl     float32 // N·L, > 0
 	point  int32   // into worker.points
@@ -197,10 +196,10 @@ func (c *cast) castLight(w *worker, px sample.Pixel, l int) {
 		if len(lobes) == 0 {
 			continue
 		}
-		nh := shade.HalfCosine(pt.n, ray.wi, pt.wo)
+		logNH := shade.LogHalf(shade.HalfCosine(pt.n, w.shots[i].Dir, pt.wo))
 		sums := w.sums.lobe[pt.local][l*len(lobes):]
 		for k := range lobes {
-			sums[k] += float64(ray.weight * lobes[k].At(nh, ray.nl))
+			sums[k] += float64(ray.weight * lobes[k].AtLog(logNH, ray.nl))
 		}
 	}
 }

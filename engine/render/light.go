@@ -59,7 +59,7 @@ func (c *cast) aimShadows(w *worker, px sample.Pixel, l int) {
 			if !(nl > 0 && weight > 0) {
 				continue
 			}
-			w.shadows[aimed] = shadowRay{wi: wi, weight: weight, nl: nl, point: int32(i), number: number}
+			w.shadows[aimed] = shadowRay{weight: weight, nl: nl, point: int32(i), number: number}
 			w.shots[aimed] = geom.Ray{Org: pt.shadow, Dir: wi, TMax: dist * beforeLight}
 			aimed++
 		}

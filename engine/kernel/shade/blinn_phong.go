@@ -21,8 +21,17 @@ type Lobe struct {
 
 // At is the specular factor of one light direction: (N·H)^S, for N·L > 0; nh in [-1, 1], nl in (0, 1].
 // To be multiplied by Cs and E0/π. At N·H = 0 a Shininess of 0 gives 1, by the convention 0^0 = 1.
-func (l Lobe) At(nh, nl float32) float32 {
-	f := num.Pow(min(max(nh, 0), 1), l.Shininess)
+func (l Lobe) At(nh, nl float32) float32 { return l.AtLog(LogHalf(nh), nl) }
+
+// LogHalf is log2 N·H, the part of a lobe that all shininesses share; -Inf where N·H <= 0.
+func LogHalf(nh float32) float64 { return num.Log2Wide(min(max(nh, 0), 1)) }
+
+// AtLog is At with N·H given by LogHalf.
+func (l Lobe) AtLog(logNH float64, nl float32) float32 {
+	f := float32(1)
+	if l.Shininess != 0 {
+		f = num.Exp2Wide(float64(float64(l.Shininess) * logNH))
+	}
 	if l.Normalized {
 		f *= (l.Shininess + 8) / 8 * nl
 	}
