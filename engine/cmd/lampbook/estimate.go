@@ -24,6 +24,7 @@ type cost struct {
 const (
 	probeCasts  = 3                       // first, middle and last
 	probeLooks  = 4                       // frames of each
+	probeTries  = 3                       // of each, of which the fastest counts: the others met the machine's other work
 	probeRays   = 100_000                 // at most, in each
 	probePause  = 1500 * time.Millisecond // a probe that takes longer is cut off, and what it did by then counts
 	probePixels = 5_000                   // at least, with fewer samples if need be: a smaller picture says little of how a file compresses
@@ -68,12 +69,22 @@ func estimate(ctx context.Context, j *job, casts []render.Cast, threads int) (co
 			return cost{}, err
 		}
 		once += time.Since(started)
-		p, ok, err := try(ctx, engine, small, on, threads)
-		if err != nil {
-			return cost{}, err
+		var best probe
+		tried := false
+		for range probeTries {
+			p, ok, err := try(ctx, engine, small, on, threads)
+			if err != nil {
+				return cost{}, err
+			}
+			if ok && tried {
+				p = p.with(best, math.Min)
+			}
+			if ok {
+				best, tried = p, true
+			}
 		}
-		if ok {
-			probes = append(probes, p)
+		if tried {
+			probes = append(probes, best)
 		}
 	}
 	if len(probes) == 0 {

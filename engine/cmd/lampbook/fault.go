@@ -24,7 +24,7 @@ func (f fault) Unwrap() error { return f.err }
 // wrong is a mistake on the command line or in the scene.
 func wrong(err error) error {
 	if errors.Is(err, errStopped) || errors.Is(err, context.Canceled) {
-		return fault{statusStopped, errors.New("lampbook: stopped before the scene was read")}
+		return fault{statusStopped, errors.New("lampbook: stopped")}
 	}
 	return fault{statusWrong, err}
 }

@@ -7,7 +7,7 @@ settings{ size = {8, 8}, samples = 1, exposure = 0 }
 
 for _, step in ipairs{ 1, 2, 3 } do
   frame{ name = "view-" .. step, tags = { view = step }, lights = { window }, things = { ball },
-         samples = step == 1 and 1 or 65536, size = step == 1 and {8, 8} or {512, 512},
+         samples = step == 1 and 1 or 8192, size = step == 1 and {8, 8} or {1024, 1024},
          camera = camera{ position = {0, step / 10, 0.6}, target = {0, 0, 0} } }
 end
 
