@@ -13,10 +13,23 @@ func emptySlab() slab {
 
 // join grows b to hold o.
 func (b *slab) join(o *slab) {
-	for i := range b {
-		if o[i] < b[i] {
-			b[i] = o[i]
-		}
+	if o[0] < b[0] {
+		b[0] = o[0]
+	}
+	if o[1] < b[1] {
+		b[1] = o[1]
+	}
+	if o[2] < b[2] {
+		b[2] = o[2]
+	}
+	if o[4] < b[4] {
+		b[4] = o[4]
+	}
+	if o[5] < b[5] {
+		b[5] = o[5]
+	}
+	if o[6] < b[6] {
+		b[6] = o[6]
 	}
 }
 
