@@ -7,10 +7,12 @@ import (
 	"strings"
 
 	"lampbook/engine/model"
+	"lampbook/output/sheet"
 )
 
-// choose keeps only the frames for which every tag named has one of the values given for it. An unknown tag, or a value that no frame
-// has, is an error that names what there is. A number is met as it stands, or else as it reads when rounded to the decimals typed.
+// choose keeps only the frames for which every tag named has one of the values given for it, and the sheets that still have something to
+// show. An unknown tag, or a value that no frame has, is an error that names what there is. A number is met as it stands, or else
+// as it reads when rounded to the decimals typed.
 func choose(p *model.Plan, only []assignment) error {
 	var keys []string
 	for _, a := range only {
@@ -38,10 +40,17 @@ func choose(p *model.Plan, only []assignment) error {
 	if len(p.Frames) == 0 {
 		return wrongf("--only: no frame has all of these tags at once")
 	}
-	p.Sheets = slices.DeleteFunc(p.Sheets, func(s model.Sheet) bool {
-		return !slices.ContainsFunc(p.Frames, func(f model.Frame) bool { return s.Shows(&f) })
-	})
+	p.Sheets = slices.DeleteFunc(p.Sheets, func(s model.Sheet) bool { return !speaksOf(s, p) })
 	return nil
+}
+
+// speaksOf reports whether a sheet of the whole plan still has something to show in the narrowed one: frames, with the tags of its axes.
+func speaksOf(s model.Sheet, p *model.Plan) bool {
+	if !slices.ContainsFunc(p.Frames, func(f model.Frame) bool { return s.Shows(&f) }) {
+		return false
+	}
+	_, err := sheet.Names(p, s, sheet.Options{})
+	return err == nil
 }
 
 // meant lists the values of the tag that the text can mean.
