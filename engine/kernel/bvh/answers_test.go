@@ -178,6 +178,43 @@ func TestTiesAmongPlacements(t *testing.T) {
 	}
 }
 
+// Many placements, cast at in bundles and one by one, against every triangle of every placement.
+func TestManyPlacements(t *testing.T) {
+	g := rand.New(rand.NewPCG(61, 62))
+	m := bowl(40)
+	var ps []refPlacement
+	box := geom.EmptyBox()
+	for range 60 {
+		a := geom.Turn(geom.Vec3d{X: 360 * g.Float64(), Y: 360 * g.Float64()}).Mul(geom.ScaleBy(geom.Vec3d{X: 1 + g.Float64(), Y: 3 * g.Float64(), Z: -1}))
+		a = geom.Translate(geom.Vec3d{X: 2 * g.Float64(), Y: 2 * g.Float64(), Z: 2 * g.Float64()}).Mul(a)
+		ps = append(ps, refPlacement{m, a, Mask(1 + g.IntN(3))})
+		at := a.T.Narrow()
+		box = box.Extend(at)
+	}
+	camera := pixelRays(box, 6, 16)
+	var first, shade []Hit
+	for _, r := range camera {
+		first = append(first, refClosest(ps, SeenByCamera, r))
+	}
+	shadow := shadowRays(box, camera, first)
+	for _, r := range shadow {
+		shade = append(shade, refClosest(ps, CastsShadow, r))
+	}
+	for walk, wide := range walks() {
+		s := sceneOf(wide, ps)
+		for _, batch := range []int{1, 16} {
+			for i := 0; i < len(camera); i += batch {
+				j := i + batch
+				agree(t, walk, s, ps, SeenByCamera, camera[i:j], first[i:j])
+				agree(t, walk, s, ps, CastsShadow, shadow[i:j], shade[i:j])
+			}
+		}
+	}
+	if n := len(sceneOf(false, ps).overview.nodes); n < 2 {
+		t.Errorf("%d nodes over 60 placements: the level above is not used", n)
+	}
+}
+
 // The switch for tests and the build tag must do what they say, or the walks are compared with themselves.
 func TestWhichWalkRuns(t *testing.T) {
 	if os.Getenv("LAMPBOOK_WALK") == "portable" && haveWide {

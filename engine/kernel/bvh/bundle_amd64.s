@@ -1,6 +1,6 @@
 //go:build !purego
 
-// Bounds of a bundle of rays, and its test against the boxes of a node. See bundle_amd64.go.
+// Bounds of a bundle of rays, and its test against the boxes of a node. See bundle.go.
 
 #include "textflag.h"
 
@@ -11,10 +11,10 @@ GLOBL minusInf<>(SB), RODATA|NOPTR, $4
 DATA notSign<>+0(SB)/4, $0x7fffffff
 GLOBL notSign<>(SB), RODATA|NOPTR, $4
 
-// func bundleEnds(rays *geom.Ray, n int, e *bundleBounds)
+// func bundleEndsWide(rays *geom.Ray, n int, e *bundleBounds)
 //
 // A minimum or maximum takes its first operand here where one is NaN: the bound so far.
-TEXT ·bundleEnds(SB), NOSPLIT, $0-24
+TEXT ·bundleEndsWide(SB), NOSPLIT, $0-24
 	MOVQ rays+0(FP), SI
 	MOVQ n+8(FP), CX
 	MOVQ e+16(FP), DI
@@ -25,6 +25,8 @@ TEXT ·bundleEnds(SB), NOSPLIT, $0-24
 	VXORPS X8, X8, X8 // some sign is negative
 	VPCMPEQD X9, X9, X9 // all signs are negative
 	XORL DX, DX
+	MOVQ CX, R9
+	MOVQ CX, R10 // a live one, counted from the end
 
 ray:
 	VMOVSS 24(SI), X0
@@ -32,6 +34,7 @@ ray:
 	VUCOMISS X0, X1
 	JLS next // TMax is not above TMin, or one is NaN
 	INCL DX
+	MOVQ CX, R10
 	VMOVUPS (SI), X0
 	VMOVUPS 12(SI), X2
 	VBROADCASTSS X1, X1
@@ -57,10 +60,12 @@ next:
 	VMOVMSKPS X9, AX
 	MOVL AX, 68(DI)
 	MOVL DX, 72(DI)
+	SUBQ R10, R9
+	MOVL R9, 76(DI)
 	RET
 
-// func bundleSpan(rays *geom.Ray, n int, axis int, z0, z1 float32, s *bundleSpans)
-TEXT ·bundleSpan(SB), NOSPLIT, $0-40
+// func bundleSpanWide(rays *geom.Ray, n int, axis int, z0, z1 float32, s *bundleSpans)
+TEXT ·bundleSpanWide(SB), NOSPLIT, $0-40
 	MOVQ rays+0(FP), SI
 	MOVQ n+8(FP), CX
 	MOVQ axis+16(FP), BX
@@ -119,8 +124,8 @@ next:
 	VADDPS Y6, Y4, Y4 \
 	VADDPS Y6, Y5, Y5
 
-// func shaftMask(n *wideNode, s *shaft) uint32
-TEXT ·shaftMask(SB), NOSPLIT, $0-20
+// func shaftMaskWide(n *wideNode, s *shaft) uint32
+TEXT ·shaftMaskWide(SB), NOSPLIT, $0-20
 	MOVQ n+0(FP), AX
 	MOVQ s+8(FP), SI
 	MOVQ 0(SI), R9  // rows of x

@@ -37,7 +37,10 @@ type Hit struct {
 }
 
 // Scene is a set of placements, ready for casting.
-type Scene struct{ placed []placed }
+type Scene struct {
+	placed   []placed // in the order of their index
+	overview overview
+}
 
 // placed is a placement that can be hit.
 type placed struct {
@@ -60,6 +63,8 @@ func (a *affine32) ray(r geom.Ray) geom.Ray {
 // NewScene places trees. Placements with an empty tree, no mask or a map that cannot be undone are never hit.
 func NewScene(placements []Placement) *Scene {
 	s := &Scene{}
+	var boxes []geom.Box
+	var reliances []float64
 	for i, p := range placements {
 		if p.Tree == nil || p.Tree.bounds.Empty() || p.Mask == 0 {
 			continue
@@ -73,7 +78,10 @@ func NewScene(placements []Placement) *Scene {
 			continue
 		}
 		s.placed = append(s.placed, placed{p.Tree, a, p.WorldFromObject == geom.Identity(), p.Mask, uint32(i)})
+		boxes = append(boxes, p.WorldFromObject.Box(p.Tree.bounds))
+		reliances = append(reliances, reliance(p.WorldFromObject, inv))
 	}
+	s.overview = oversee(boxes, reliances)
 	return s
 }
 
@@ -82,30 +90,95 @@ type Walker struct {
 	pairs pairStack
 	wide  wideScratch
 	moved []geom.Ray // rays in object space
+	shaft shaft
+	todo  []uint32
+	found []uint32 // places in Scene.placed
 }
 
+// few is how many placements are tried one by one where rays share no shaft. With more, each ray gets a shaft of its own.
+const few = 4
+
 // Closest finds for each ray the nearest hit among placements of the mask. Both slices have the same length. Rays' t counts in lengths of
-// Dir and is the same in world and object space.
+// Dir and is the same in world and object space. A TMin below 0 counts as 0; rays whose TMax is not above TMin, and rays that are
+// not finite, hit nothing.
+//
+// It is fastest if rays are many and run through the same part of the scene, such as all camera rays of a pixel.
 func (s *Scene) Closest(w *Walker, mask Mask, rays []geom.Ray, hits []Hit) {
 	hits = hits[:len(rays)]
 	for i := range hits {
 		hits[i] = Hit{T: inf, Placement: NoHit}
 	}
-	for i := range s.placed {
-		if p := &s.placed[i]; p.mask&mask != 0 {
-			p.tree.closest(w, w.move(p, rays), hits, p.index)
+	if len(rays) == 0 {
+		return
+	}
+	if w.look(s, rays) {
+		for _, k := range w.found {
+			if p := &s.placed[k]; p.mask&mask != 0 {
+				p.tree.closest(w, w.move(p, rays), hits, p.index)
+			}
+		}
+		return
+	}
+	for i := range rays {
+		if !w.look(s, rays[i:i+1]) {
+			w.lookAtAll(s)
+		}
+		for _, k := range w.found {
+			if p := &s.placed[k]; p.mask&mask != 0 {
+				p.tree.closest(w, w.move(p, rays[i:i+1]), hits[i:i+1], p.index)
+			}
 		}
 	}
 }
 
-// Occluded reports for each ray whether anything of the mask is hit between its TMin and TMax. Both slices have the same length.
+// Occluded reports for each ray whether anything of the mask is hit between its TMin and TMax. Both slices have the same length. What is
+// said at Closest of rays holds here.
 func (s *Scene) Occluded(w *Walker, mask Mask, rays []geom.Ray, blocked []bool) {
 	blocked = blocked[:len(rays)]
 	clear(blocked)
-	for i := range s.placed {
-		if p := &s.placed[i]; p.mask&mask != 0 {
-			p.tree.occluded(w, w.move(p, rays), blocked)
+	if len(rays) == 0 {
+		return
+	}
+	if w.look(s, rays) {
+		for _, k := range w.found {
+			if p := &s.placed[k]; p.mask&mask != 0 {
+				p.tree.occluded(w, w.move(p, rays), blocked)
+			}
 		}
+		return
+	}
+	for i := range rays {
+		if !w.look(s, rays[i:i+1]) {
+			w.lookAtAll(s)
+		}
+		for _, k := range w.found {
+			if p := &s.placed[k]; p.mask&mask != 0 {
+				p.tree.occluded(w, w.move(p, rays[i:i+1]), blocked[i:i+1])
+			}
+		}
+	}
+}
+
+// look sets w.found to what rays may meet, near things first, or is false if they have to be cast one by one.
+func (w *Walker) look(s *Scene, rays []geom.Ray) bool {
+	if len(s.placed) > 1 {
+		var ok bool
+		if w.found, ok = s.overview.crossed(rays, &w.shaft, &w.todo, w.found[:0]); ok {
+			return true
+		}
+		if len(s.placed) > few {
+			return false
+		}
+	}
+	w.lookAtAll(s)
+	return true
+}
+
+// lookAtAll sets w.found to all placements.
+func (w *Walker) lookAtAll(s *Scene) {
+	w.found = w.found[:0]
+	for k := range s.placed {
+		w.found = append(w.found, uint32(k))
 	}
 }
 

@@ -68,7 +68,7 @@ func (t *wideTree) head() wideHead {
 // enter returns the node from which rays start, nil if none of them hits anything.
 func (t *wideTree) enter(w *Walker, rays []geom.Ray) unsafe.Pointer {
 	if len(rays) >= leastBundle && useBundles {
-		switch w.wide.shaft.enclose(rays, t.bounds) {
+		switch w.wide.shaft.enclose(rays, t.bounds, 1) {
 		case outside:
 			return nil
 		case enclosed:

@@ -5,6 +5,8 @@ package bvh
 import (
 	"testing"
 
+	"lampbook/engine/kernel/geom"
+
 	"pgregory.net/rapid"
 )
 
@@ -71,4 +73,53 @@ func TestBuildLoopsAgree(t *testing.T) {
 			}
 		}
 	})
+}
+
+// So must the bundles' bounds and masks.
+func TestBundleLoopsAgree(t *testing.T) {
+	if !haveWide {
+		t.Skip("this machine has no vector walk, or LAMPBOOK_WALK=portable")
+	}
+	enclosedSome := 0
+	rapid.Check(t, func(t *rapid.T) {
+		m := drawMesh(t)
+		tree := buildFor(true, m, BuildOptions{})
+		if len(tree.wide.nodes) == 0 {
+			return
+		}
+		seed := rapid.Uint64().Draw(t, "seed")
+		rays := []geom.Ray{aimAt(m, seed, 0)}
+		for i := range rapid.IntRange(0, 20).Draw(t, "rays") {
+			r := rays[0]
+			if rapid.IntRange(0, 9).Draw(t, "stray") == 0 {
+				r = aimAt(m, seed, uint64(i))
+			}
+			r.Dir.X += 0.01 * float32(i) * r.Dir.Z
+			rays = append(rays, r)
+		}
+		var a, b bundleBounds
+		bundleEndsPlain(rays, &a)
+		bundleEndsWide(&rays[0], len(rays), &b)
+		a.some, b.some = 0, 0 // any of them will do
+		for _, v := range []*[4]float32{&a.orgMin, &a.orgMax, &a.endMin, &a.endMax, &b.orgMin, &b.orgMax, &b.endMin, &b.endMax} {
+			v[3] = 0
+		}
+		a.anyNegative, b.anyNegative, a.allNegative, b.allNegative = a.anyNegative&7, b.anyNegative&7, a.allNegative&7, b.allNegative&7
+		if a != b {
+			t.Fatalf("bounds %+v and %+v", a, b)
+		}
+		var s shaft
+		if s.enclose(rays, tree.bounds, 1) != enclosed {
+			return
+		}
+		enclosedSome++
+		for i := range tree.wide.nodes {
+			if p, f := shaftMaskPlain(&tree.wide.nodes[i], &s), shaftMaskWide(&tree.wide.nodes[i], &s); p != f {
+				t.Fatalf("node %d: masks %b and %b", i, p, f)
+			}
+		}
+	})
+	if enclosedSome < 20 {
+		t.Errorf("only %d shafts", enclosedSome)
+	}
 }
