@@ -40,7 +40,7 @@ local function product(row)
 end
 
 local views = { front = {0, 0.16, 1}, raised = {0.5, 0.75, 0.85}, above = {0, 1, 0.22} }
-settings{ size = {300, 300}, samples = 36, exposure = rigs.three_point{}:meter{ at = {0, 0.1, 0}, facing = {-0.5, 0.6, 1} } }
+settings{ size = {288, 288}, samples = 32, exposure = rigs.three_point{}:meter{ at = {0, 0.1, 0}, facing = {-0.5, 0.6, 1} } + 0.4 }
 
 for _, row in ipairs(data.csv("products.csv", { numbers = { "width_cm", "height_cm", "flutes" }, text = "article" })) do
   local things = product(row)

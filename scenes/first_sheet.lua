@@ -16,13 +16,13 @@ local bowl = pot{ {0, 0.3}, {2.1, 0.3}, {2.1, 0.3}, {2.3, 0}, {2.6, 0}, {2.6, 0}
 -- A softbox to the upper left and a little light from everywhere. Intensities are in candela per square metre (nit).
 local lights = rig{
   light.area{ name = "softbox", width = 0.5, height = 0.7, position = {-0.6, 0.7, 0.55}, target = {0, 0.1, 0}, intensity = 2500 },
-  light.ambient{ name = "room", intensity = 60 },
+  light.ambient{ name = "room", intensity = 80 },
 }
 
 -- The meter is held where the pots stand: an 18 % grey card there would come out as 18 % grey in every picture.
 settings{ size = {480, 360}, samples = 64, exposure = lights:meter{ at = {0, 0.1, 0}, facing = {0, 0.6, 1} } }
 
-local glazes = { oxblood = color "#74312a", celadon = color "#9dbfa0", slate = color "#46525e" }
+local glazes = { oxblood = color "#74312a", celadon = color "#9dbfa0", slate = color "#56616b" }
 
 for step in sweep{ {"glaze", {"oxblood", "celadon", "slate"}}, {"gloss", geometric(4, 256, 4)} } do
   -- gloss is the exponent of the highlight. Normalized, a small bright highlight sends out as much light as a wide faint one.

@@ -2,15 +2,18 @@ package prelude_test
 
 import (
 	"context"
+	"fmt"
 	"math"
 	"os"
 	"path/filepath"
+	"regexp"
 	"strings"
 	"testing"
 
 	"lampbook/engine/mesh"
 	"lampbook/engine/model"
 	"lampbook/lua/host"
+	"lampbook/lua/prelude"
 )
 
 // evaluate runs a scene's text with all modules at hand. A scene needs a frame, so it gets one.
@@ -201,5 +204,26 @@ func TestCoveIsSmooth(t *testing.T) {
 		if face := b.Sub(a).Cross(c.Sub(a)).Unit(); face.Dot(m.Normals[tri[0]].Wide()) < 0.99 {
 			t.Errorf("triangle %v faces %v, its normal is %v", tri, face, m.Normals[tri[0]])
 		}
+	}
+}
+
+// TestSurfaceTable holds the table at the head of surfaces.lua to what its functions give.
+func TestSurfaceTable(t *testing.T) {
+	text, _ := prelude.Source("surfaces")
+	row := regexp.MustCompile(`(?m)^---   ([a-z_]+) +([0-9.]+) +([0-9]+) +(#[0-9a-f]{6}) `)
+	found := row.FindAllStringSubmatch(text, -1)
+	var scene strings.Builder
+	scene.WriteString("local listed = 0\n")
+	for _, r := range found {
+		fmt.Fprintf(&scene, "listed = listed + 1\ndo\n local m = surfaces.%s()\n near(m.shininess, %s, 0, %q)\n", r[1], r[3], r[1])
+		if r[1] == "brass" {
+			fmt.Fprintf(&scene, " near(m.specular.r, %s * color(%q).r, 1e-6, %q)\nend\n", r[2], r[4], r[1])
+			continue
+		}
+		fmt.Fprintf(&scene, " near(m.specular.r, %s, 1e-6, %q)\n if m.diffuse.hex ~= %q then error(m.diffuse.hex) end\nend\n", r[2], r[1], r[4])
+	}
+	scene.WriteString("for name in pairs(surfaces) do listed = listed - 1 end\nnear(listed, 0, 0, \"surfaces that the table leaves out\")")
+	if _, _, err := evaluate(t, scene.String()); err != nil {
+		t.Error(err)
 	}
 }
