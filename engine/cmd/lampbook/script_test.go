@@ -25,9 +25,19 @@ const scripts = "../../../testdata/script"
 //	status N lampbook …         runs lampbook and checks its exit status
 //	waitfor FILE                waits until the file exists
 //	interrupt N FILE lampbook … runs it, sends an interrupt once FILE exists, and checks the status
+//
+// With -short, as under the race detector, only those run that say something about threads and signals.
 func TestScript(t *testing.T) {
+	dir, some := scripts, []string(nil)
+	if testing.Short() {
+		dir = ""
+		for _, name := range []string{"bad_mesh", "interrupt", "lock", "render_first", "render_threads"} {
+			some = append(some, filepath.Join(scripts, name+".txtar"))
+		}
+	}
 	testscript.Run(t, testscript.Params{
-		Dir:                 scripts,
+		Dir:                 dir,
+		Files:               some,
 		RequireExplicitExec: true,
 		RequireUniqueNames:  true,
 		Setup: func(env *testscript.Env) error {
