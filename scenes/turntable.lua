@@ -11,7 +11,8 @@ local function lip(angle, radius, y)
   return radius + 0.022 * pull, y + 0.006 * pull
 end
 local wall = forms.smooth{ {0, 0.002}, {0.036, 0.002}, {0.036, 0.002}, {0.038, 0}, {0.041, 0}, {0.041, 0}, {0.046, 0.012}, {0.058, 0.045},
-  {0.058, 0.08}, {0.047, 0.12}, {0.041, 0.15}, {0.044, 0.182}, {0.046, 0.19}, {0.0445, 0.191}, {0.042, 0.182}, {0.038, 0.15}, {0.043, 0.12}, {0, 0.09} }
+  {0.058, 0.08}, {0.047, 0.12}, {0.041, 0.15}, {0.044, 0.182}, {0.046, 0.19}, {0.0445, 0.191}, {0.042, 0.182}, {0.038, 0.15},
+  {0.043, 0.12}, {0, 0.09} }
 local body = forms.thrown{ profile = wall, shape = lip }
 local handle = forms.tube{ radius = 0.0075, tip = 0.006, flat = 0.62, path = forms.smooth{
   {-0.04, 0.165, 0}, {-0.062, 0.173, 0}, {-0.085, 0.158, 0}, {-0.093, 0.125, 0}, {-0.081, 0.09, 0}, {-0.055, 0.066, 0} } }
@@ -30,12 +31,14 @@ local function pitcher(turn)
   }
   for k = 0, 4 do
     local angle = math.rad(turn - 90 + 17 * (k - 2))
-    things[#things + 1] = place{ mesh = button, material = surfaces.stoneware(color "#d8a766"), at = { 0.0585 * math.cos(angle), 0.068, -0.0585 * math.sin(angle) } }
+    things[#things + 1] = place{ mesh = button, material = surfaces.stoneware(color "#d8a766"),
+                                 at = { 0.0585 * math.cos(angle), 0.068, -0.0585 * math.sin(angle) } }
   end
   return things
 end
 
 local lights = rigs.three_point{ radius = 0.11, centre = {0, 0.1, 0}, softness = 1.8 }
+-- One exposure for all views, 0.4 stops over the meter, for a light, printed look.
 settings{ size = {208, 240}, samples = 16, exposure = lights:meter{ at = {0, 0.1, 0}, facing = {-0.4, 0.4, 1} } + 0.4 }
 local view = camera.fit{ things = pitcher(0), over = turntable{}, direction = {0, 0.35, 1}, margin = 0.07 }
 

@@ -37,7 +37,8 @@ end
 local function read(where, given, own)
   local rules = {
     subject = { kind = "userdata", what = "a thing or a mesh" }, radius = { 0.1, above = 0, unit = "metres" },
-    centre = { kind = "table" }, lux = { 1000, above = 0, unit = "lux" }, kelvin = { kind = "number", low = 1000, high = 40000, unit = "kelvin" },
+    centre = { kind = "table" }, lux = { 1000, above = 0, unit = "lux" },
+    kelvin = { kind = "number", low = 1000, high = 40000, unit = "kelvin" },
   }
   for name, rule in pairs(own) do rules[name] = rule end
   local o = keys.read(where, given, rules)
@@ -113,11 +114,11 @@ function rigs.tent(given)
   local half = o.size / 2
   local lights = {}
   for _, side in ipairs{ { "left", -90 }, { "right", 90 }, { "front", 0 }, { "back", 180 } } do
-    -- The panels reach from the floor, one radius below the centre, to the top.
-    local panel = softbox(o, side[1], { side = side[2], up = 0, distance = half, width = o.size, height = o.size - 2 })
-    local lift = keys.round((half - 1 - 1) * o.radius)
+    -- The panels reach from the floor, one radius below the centre, to the top panel.
+    local panel = softbox(o, side[1], { side = side[2], up = 0, distance = half, width = o.size, height = o.size - 1 })
     local p, c = panel.position, o.centre
-    lights[#lights + 1] = panel:with{ position = { p[1], keys.round(c[2] + lift + o.radius), p[3] }, target = { c[1], keys.round(c[2] + lift + o.radius), c[3] } }
+    local y = keys.round(c[2] + (half - 1.5) * o.radius)
+    lights[#lights + 1] = panel:with{ position = { p[1], y, p[3] }, target = { c[1], y, c[3] } }
   end
   lights[#lights + 1] = softbox(o, "top", { side = 0, up = 90, distance = o.size - 2, width = o.size, height = o.size })
   local above = { o.centre[1], o.centre[2] + 1, o.centre[3] }

@@ -1,9 +1,9 @@
---- What things stand on and before, and greys to judge by. Ground and walls are backdrops: camera.fit and the default lights leave them out.
---- All lengths are in metres; radius is half the subject's largest extent and sets sizes, as in rigs; default 0.1, a vase.
+--- What things stand on and before, and greys to judge by. Ground and walls are backdrops: camera.fit and the default lights leave
+--- them out. All lengths are in metres; radius is half the subject's largest extent and sets sizes, as in rigs; default 0.1, a vase.
 local keys = require "keys"
 local stands = {}
 
---- The matt light grey of tables and coves: a reflectance of 0.38, a stop above the grey card, so that dark and light glazes both stand out.
+--- The matt light grey of tables and coves: a stop above the grey card, so that dark and light glazes both stand out.
 local GROUND = 0.38
 
 local function matt(reflectance)
@@ -76,7 +76,8 @@ function stands.cove(given)
 end
 
 --- A grey reference sphere, perfectly matt: it shows exposure, the light's direction and its colour. 18 % reflects as the grey card does;
---- where it faces a metered light it is L* 49.5, sRGB 118.
+--- where it faces a metered light it reads 0.18, L* 49.5, sRGB 118. That is before the tone curve, or with tone = "clip": "neutral" shows
+--- what is matt 0.04 darker, the share that it keeps for highlights.
 ---   radius        its own, > 0; default 0.03
 ---   at            where it stands, its lowest point; default the origin
 ---   reflectance   0 to 1; default 0.18
@@ -89,13 +90,15 @@ function stands.grey_sphere(given)
   }
 end
 
---- Reflectances of the ramp's patches: one stop a step through the grey card. Evenly lit, and exposed so that 0.18 shows as 0.18, they read
+--- Reflectances of the ramp's patches: one stop a step through the grey card. Evenly lit, and exposed so that the grey card reads 0.18,
+--- they read, before the tone curve or with tone = "clip",
 ---   reflectance   0.0225   0.045   0.09   0.18   0.36   0.72
 ---   L*            16.7     25.3    36.0   49.5   66.5   88.0
 ---   sRGB          41       60      85     118    162    221
 stands.ramp_values = { 0.0225, 0.045, 0.09, 0.18, 0.36, 0.72 }
 
---- A neutral ramp: a row of matt patches of stated reflectance, dark to light from left to right. Gives a list of things, named "ramp 0.18" and so on.
+--- A neutral ramp: a row of matt patches of stated reflectance, dark to light from left to right. Gives a list of things, named
+--- "ramp 0.18" and so on.
 ---   width    of the row, > 0; default 0.12              at      middle of its front edge, on the ground; default the origin
 ---   lean     degrees that it is raised, 0 flat to 90 upright; default 60
 ---   turn     degrees about the vertical, counter-clockwise seen from above; default 0: it faces +z
