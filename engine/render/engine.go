@@ -120,6 +120,9 @@ func (c *cast) render(ctx context.Context, o Options) ([]*film, Stats, error) {
 		before := w.stats
 		for y := t.y0; y < t.y1; y += blockSide {
 			for x := t.x0; x < t.x1; x += blockSide {
+				if ctx.Err() != nil {
+					return // eachTile says so; at many samples a tile alone takes seconds
+				}
 				c.drawBlock(w, films, tile{x, y, min(x+blockSide, t.x1), min(y+blockSide, t.y1)})
 			}
 		}
