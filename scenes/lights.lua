@@ -27,9 +27,9 @@ show({ kind = "point" }, metered(light.point{ position = from }), room)
 -- Candela: all of it within inner, nothing beyond outer, half angles in degrees.
 show({ kind = "spot" }, metered(light.spot{ position = from, target = middle, inner = 9, outer = 14 }), room)
 -- Candela per square metre (nit), surfaces that emit: their form is seen in highlights, their size in where shadows end.
-show({ kind = "area: rectangle" }, metered(light.area{ position = from, target = middle, width = 0.2, height = 0.6 }), room)
-show({ kind = "area: disk" }, metered(light.area{ shape = "disk", position = from, target = middle, radius = 0.3 }), room)
-show({ kind = "area: sphere" }, metered(light.area{ shape = "sphere", position = from, radius = 0.12 }), room)
+show({ kind = "area rectangle" }, metered(light.area{ position = from, target = middle, width = 0.2, height = 0.6 }), room)
+show({ kind = "area disk" }, metered(light.area{ shape = "disk", position = from, target = middle, radius = 0.3 }), room)
+show({ kind = "area sphere" }, metered(light.area{ shape = "sphere", position = from, radius = 0.12 }), room)
 -- Nit: from everywhere at once, and so it shows no form.
 show({ kind = "ambient" }, metered(light.ambient{}))
 -- Lights add up: key, fill, rim and room in one rig. An illuminance of π lux shows a grey card as grey at an exposure of 0.
@@ -41,5 +41,5 @@ for _, edge in ipairs{ 2, 10, 30, 90 } do
 end
 
 sheet{ title = "Kinds of light", columns = "kind", per_line = 4, where = { kind = {
-  "directional", "point", "spot", "area: rectangle", "area: disk", "area: sphere", "ambient", "three-point rig" } } }
+  "directional", "point", "spot", "area rectangle", "area disk", "area sphere", "ambient", "three-point rig" } } }
 sheet{ title = "Hard and soft shadow: a square lamp, its edge", columns = "lamp_cm", per_line = 4, where = { lamp_cm = { 2, 10, 30, 90 } } }
