@@ -107,6 +107,7 @@ end
 --- A tent of white cloth: five large panels, nearly uniform light, soft and almost without shadow. Lights "left", "right", "front", "back",
 --- "top" and "room", all of one luminance. lux is what a card at the centre gets that faces up. It shows colour well and shape badly:
 --- rigs.tent():with{ left = { stops = -1.5 } } or :without "left" puts a darker side back.
+--- Glossy surfaces show the panels with noise in them; settings{ light_samples = 4 } halves it.
 ---   size   edge of the tent in radii, 4 to 40; default 8
 ---   room   ambient light as a share of lux, 0 to 1; default 0.25: what the cloth of the floor would send
 function rigs.tent(given)
@@ -114,11 +115,12 @@ function rigs.tent(given)
   local half = o.size / 2
   local lights = {}
   for _, side in ipairs{ { "left", -90 }, { "right", 90 }, { "front", 0 }, { "back", 180 } } do
-    -- The panels reach from the floor, one radius below the centre, to the top panel.
-    local panel = softbox(o, side[1], { side = side[2], up = 0, distance = half, width = o.size, height = o.size - 1 })
+    -- The panels hang from the top one to one and a half radii above the floor, and shine outward too: else an edge would be seen on
+    -- the floor below them.
+    local panel = softbox(o, side[1], { side = side[2], up = 0, distance = half, width = o.size, height = o.size - 2.5 })
     local p, c = panel.position, o.centre
-    local y = keys.round(c[2] + (half - 1.5) * o.radius)
-    lights[#lights + 1] = panel:with{ position = { p[1], y, p[3] }, target = { c[1], y, c[3] } }
+    local y = keys.round(c[2] + (half - 0.75) * o.radius)
+    lights[#lights + 1] = panel:with{ position = { p[1], y, p[3] }, target = { c[1], y, c[3] }, two_sided = true }
   end
   lights[#lights + 1] = softbox(o, "top", { side = 0, up = 90, distance = o.size - 2, width = o.size, height = o.size })
   local above = { o.centre[1], o.centre[2] + 1, o.centre[3] }
