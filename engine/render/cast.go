@@ -145,7 +145,8 @@ func (c *cast) castCamera(w *worker, px sample.Pixel, x, y int, first uint32, n 
 		c.scene.Closest(&w.walker, bvh.SeenByCamera, w.rays, w.hits)
 	}
 
-	w.points = w.points[:0]
+	w.points = grow(w.points, n)
+	found := 0
 	for i := range n {
 		h, ray := &w.hits[i], &w.rays[i]
 		if len(c.globes) > 0 {
@@ -158,10 +159,11 @@ func (c *cast) castCamera(w *worker, px sample.Pixel, x, y int, first uint32, n 
 		if h.Placement == bvh.NoHit {
 			continue
 		}
-		pt, surface := c.interact(h, ray)
+		pt := &w.points[found]
+		found++
+		surface := c.interact(h, ray, pt)
 		pt.local = w.sums.local(c, surface)
 		pt.index = first + uint32(i)
-		w.points = append(w.points, pt)
 		w.sums.count[pt.local]++
 		w.sums.covered++
 		if c.wantDepth {
@@ -173,6 +175,7 @@ func (c *cast) castCamera(w *worker, px sample.Pixel, x, y int, first uint32, n 
 			w.sums.normal[2] += float64(pt.n.Z)
 		}
 	}
+	w.points = w.points[:found]
 }
 
 // castLight casts the shadow rays from w.points to light l and adds what arrives to the sums.

@@ -21,8 +21,9 @@ func (c *cast) surfaceOf(h *bvh.Hit) int32 {
 	return pl.firstSurface + int32(pl.mesh.Slots[h.Triangle])
 }
 
-// interact works out the point that a camera ray hit. Both sides of a surface are shaded: normals turn towards the camera.
-func (c *cast) interact(h *bvh.Hit, ray *geom.Ray) (pt hit, surface int32) {
+// interact works out the point that a camera ray hit, and returns its surface; local and index are the caller's. Both sides of a surface
+// are shaded: normals turn towards the camera.
+func (c *cast) interact(h *bvh.Hit, ray *geom.Ray, pt *hit) (surface int32) {
 	pl := &c.placed[h.Placement]
 	m := pl.mesh
 	tri := &m.Triangles[h.Triangle]
@@ -61,7 +62,7 @@ func (c *cast) interact(h *bvh.Hit, ray *geom.Ray) (pt hit, surface int32) {
 	}
 	largest := max(pl.reach, abs(pt.p.X), abs(pt.p.Y), abs(pt.p.Z))
 	pt.shadow = start.AddScaled(largest*offGround, ng)
-	return pt, c.surfaceOf(h)
+	return c.surfaceOf(h)
 }
 
 // below returns the way from p up to the tangent plane at vertex v with normal side·n, zero where p is not below it.

@@ -21,23 +21,10 @@ func (k Key) Point(i uint32) (u, v float32) {
 // Points fills uv with the points first, first+1, … of the stream.
 func (k Key) Points(first uint32, uv [][2]float32) {
 	s := k.stream()
-	var upper uint32 // the reversed bits of the number above its lowest byte
-	for j := range uv {
-		n := first + uint32(j)
-		if n&0xff == 0 || j == 0 {
-			upper = bits.Reverse32(n &^ 0xff)
-		}
-		uv[j][0], uv[j][1] = s.place(upper | uint32(reversed[n&0xff])<<24)
+	for j := s.points(first, uv); j < len(uv); j++ {
+		uv[j][0], uv[j][1] = s.point(first + uint32(j))
 	}
 }
-
-// reversed holds each byte with its bits reversed.
-var reversed = func() (table [256]uint8) {
-	for i := range table {
-		table[i] = bits.Reverse8(uint8(i))
-	}
-	return table
-}()
 
 // Float returns the i-th number of the stream's first dimension, in [0, 1): in an aligned run of 2^m numbers, m <= 24,
 // each interval of length 2^-m holds one. A stream gives either numbers or points, as the two coincide.
@@ -46,11 +33,8 @@ func (k Key) Float(i uint32) float32 {
 	return unit(bits.Reverse32(owen(i, mix(uint32(k)^0x55b0d1a7))))
 }
 
-func (s *stream) point(i uint32) (u, v float32) { return s.place(bits.Reverse32(i)) }
-
-// place is the point whose number has the reversed bits r.
-func (s *stream) place(r uint32) (u, v float32) {
-	i := bits.Reverse32(owen(r, s.index))
+func (s *stream) point(i uint32) (u, v float32) {
+	i = bits.Reverse32(owen(bits.Reverse32(i), s.index))
 	// The first Sobol' dimension is the index with its bits reversed, the second pascal(index) reversed. The scramble works
 	// on reversed bits, so one reversal each remains; both are done in one word.
 	w := bits.Reverse64(uint64(owen(i, s.u))<<32 | uint64(owen(pascal(i), s.v)))
