@@ -76,13 +76,6 @@ func BenchmarkRayFiles(b *testing.B) {
 	}
 }
 
-// buildFor builds a tree for the vector walk or for the portable one.
-func buildFor(wide bool, m *refMesh, o BuildOptions) *Tree {
-	defer func(was bool) { useWide = was }(useWide)
-	useWide = wide
-	return Build(m.positions, m.triangles, o)
-}
-
 // fileBatch is how many rays one call gets, as many as a pixel has samples.
 const fileBatch = 64
 
@@ -133,26 +126,6 @@ func castFile(s *Scene, kernel, mode string, threads int, rays []geom.Ray) {
 	}
 	n := float64(len(rays)) * 1e-6
 	fmt.Printf("kernel=%s mode=%s threads=%d hits=%d sumt=%.9g best=%.3f cpu_best=%.3f\n", kernel, mode, threads, count, sum, n/slices.Min(wall), n/slices.Min(cpu))
-}
-
-// onThreads is an executor for Build.
-func onThreads(threads int) func(n int, do func(i int)) {
-	return func(n int, do func(i int)) {
-		next := make(chan int, n)
-		for i := range n {
-			next <- i
-		}
-		close(next)
-		var wg sync.WaitGroup
-		for range threads {
-			wg.Go(func() {
-				for i := range next {
-					do(i)
-				}
-			})
-		}
-		wg.Wait()
-	}
 }
 
 // processSeconds is the CPU time of the whole process.
