@@ -174,7 +174,7 @@ func (e *Env) checkSheets() error {
 			}
 		}
 		for _, o := range s.Order {
-			if !has[o.Key] {
+			if !has[o.Key] && o.Key != model.AxisPass {
 				return unknownTag(s, "order", o.Key, known)
 			}
 		}
