@@ -11,6 +11,8 @@ const (
 	MaxFrames       = 200_000
 	MaxSide         = 16_384 // pixels
 	MaxSamples      = 65_536
+	MinNoise        = 0.01 // L*; what a 16-bit picture shows of it
+	MaxNoise        = 50.0 // L*
 	MaxLightSamples = 1_024
 	MaxThings       = 100_000 // in a frame
 	MaxLights       = 256     // in a frame
@@ -173,8 +175,8 @@ func (s Settings) validate() error {
 		return fmt.Errorf("samples must be 1 to %d, got %d", MaxSamples, s.Samples)
 	case s.LightSamples < 1 || s.LightSamples > MaxLightSamples:
 		return fmt.Errorf("light_samples must be 1 to %d, got %d", MaxLightSamples, s.LightSamples)
-	case s.Noise != 0 && !(s.Noise >= 0.01 && s.Noise <= 50):
-		return fmt.Errorf("noise must be 0.01 to 50 L*, or 0 for none, got %v", s.Noise)
+	case s.Noise != 0 && !(s.Noise >= MinNoise && s.Noise <= MaxNoise):
+		return fmt.Errorf("noise must be %v to %v L*, or 0 for none, got %v", MinNoise, MaxNoise, s.Noise)
 	case !finite(s.Exposure) || math.Abs(s.Exposure) > 100:
 		return fmt.Errorf("exposure must be -100 to 100 stops, got %v", s.Exposure)
 	case s.Tone > ToneACES:

@@ -11,8 +11,8 @@ import (
 // blockSide is the edge, in pixels, of the blocks that take their samples together.
 const blockSide = 4
 
-// firstRound is the least number of samples that a pixel takes where noise decides: fewer could all agree in a penumbra
-// by chance.
+// firstRound is the number of samples after which a pixel's noise is first looked at, where noise decides: fewer could all agree in a penumbra
+// by chance. An estimate compares two rounds, so that no pixel stops below twice as many.
 const firstRound = 16
 
 // adaptive is what a look remembers of a block while samples are added.
@@ -37,7 +37,7 @@ func (c *cast) drawBlock(w *worker, films []*film, b tile) {
 	}
 	end := c.settings.Samples
 	if c.adapts {
-		end = min(firstRound, end)
+		end = min(firstRound, (end+1)/2) // an estimate takes two rounds
 	}
 	for first := 0; open > 0; first, end = end, min(2*end, c.settings.Samples) {
 		for i := range w.block {
@@ -63,6 +63,7 @@ func (c *cast) drawBlock(w *worker, films []*film, b tile) {
 				films[k].expose(c, lk, &w.block[i], end, at)
 				films[k].account(end, worst, at)
 			}
+			films[k].tallies[b.y0/blockSide*blocksIn(c.settings.Width)+b.x0/blockSide] = tally{int32(end), int32(pixels), worst}
 		}
 	}
 }
@@ -153,6 +154,21 @@ func (f *film) account(samples int, worst float32, i int) {
 	if f.noise != nil {
 		f.noise[i] = worst
 	}
+}
+
+// blocksIn is how many blocks lie along an edge of so many pixels.
+func blocksIn(side int) int { return (side + blockSide - 1) / blockSide }
+
+// sampled returns the mean number of camera rays that a pixel took, and the root mean square of the blocks' errors as estimated, L*.
+func (f *film) sampled() (samples, noise float64) {
+	var pixels, rays int64
+	sum := 0.0
+	for _, t := range f.tallies {
+		pixels += int64(t.pixels)
+		rays += int64(t.samples) * int64(t.pixels)
+		sum += float64(float64(t.noise) * float64(t.noise) * float64(t.pixels))
+	}
+	return float64(rays) / float64(pixels), math.Sqrt(sum / float64(pixels))
 }
 
 // wants reports whether the settings ask for a pass.

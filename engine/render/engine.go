@@ -44,6 +44,8 @@ type Result struct {
 	Linear  *pixmap.Image // planes R G B A and the passes asked for; see pixmap.Image
 	Display *pixmap.Image // planes R G B A, sRGB-encoded, straight
 	Stats   Stats         // of the whole cast, shared by its frames
+	Samples float64       // camera rays that a pixel took for this frame, in the mean
+	Noise   float64       // standard error, L*, as estimated: root mean square over the picture; 0 unless the settings ask for noise
 	Err     error         // why there is no picture; Linear and Display are then nil
 }
 
@@ -77,6 +79,11 @@ func (e *Engine) Render(ctx context.Context, c Cast, o Options) ([]Result, error
 	}
 	for k, f := range films {
 		results[k].Stats = stats
+		if s := compiled.looks[k].settings; s.Noise > 0 || wants(s, model.PassNoise) {
+			results[k].Samples, results[k].Noise = f.sampled()
+		} else {
+			results[k].Samples = float64(s.Samples)
+		}
 		if !f.linear.Finite() {
 			results[k].Err = ErrNotFinite
 			continue

@@ -18,6 +18,14 @@ type film struct {
 	normal          [3][]float32
 	samples         []float32
 	noise           []float32
+	tallies         []tally // by block, row by row
+}
+
+// tally is how a block of pixels was sampled.
+type tally struct {
+	samples int32   // that each of its pixels took
+	pixels  int32   // fewer at the picture's edge
+	noise   float32 // estimated standard error, L*; 0 where none was asked for
 }
 
 // partNames are the component passes' layer names, in the order of film.parts.
@@ -28,6 +36,7 @@ func newFilm(s model.Settings) *film {
 	f := &film{
 		linear:  pixmap.New(s.Width, s.Height, "R", "G", "B", "A"),
 		display: pixmap.New(s.Width, s.Height, "R", "G", "B", "A"),
+		tallies: make([]tally, blocksIn(s.Width)*blocksIn(s.Height)),
 	}
 	for i := range 4 {
 		f.rgba[i], f.shown[i] = f.linear.Planes[i].Pix, f.display.Planes[i].Pix

@@ -54,9 +54,10 @@ func Casts(p *model.Plan, o Options) []render.Cast {
 func PictureBytes(s model.Settings) int64 {
 	planes := 4 + 4
 	for _, p := range s.Passes {
-		if p == model.PassDepth {
+		switch p {
+		case model.PassDepth, model.PassSamples, model.PassNoise:
 			planes++
-		} else {
+		default:
 			planes += 3
 		}
 	}

@@ -33,6 +33,7 @@ type Finished struct {
 	Linear, Display *pixmap.Image // nil where the frame failed
 	Failure         string        // why the frame failed; empty where it did not
 	Stats           render.Stats  // rays of its cast, in equal shares over the cast's frames
+	Samples, Noise  float64       // see render.Result; 0 where the frame failed
 	Time            time.Duration // wall time of its cast, likewise
 }
 
@@ -138,6 +139,7 @@ func renderCast(ctx context.Context, eng Engine, c render.Cast, o Options, progr
 			continue
 		}
 		part[i].Linear, part[i].Display = r.Linear, r.Display
+		part[i].Samples, part[i].Noise = r.Samples, r.Noise
 	}
 	return part, true
 }
