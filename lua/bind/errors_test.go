@@ -96,9 +96,12 @@ var errorTests = []struct{ scene, want string }{
 	{`print(data.json("products.json")[2].hight)`, `the row of line 3 has no column "hight"; did you mean "height"? accepted: name, height, glaze, tags`},
 	// Settings, frames and sheets
 	{`settings{ size = {0, 480} }`, `settings: size must be whole numbers of pixels from 1 to 16384, got {0, 480}`},
+	{`settings{ noise = 0.001 }`, `settings: noise must be a number from 0.01 to 50 L*, or 0 for none, got 0.001`},
+	{`settings{ noise = "low" }`, `settings: noise must be a number from 0.01 to 50 L*, or 0 for none, got "low"`},
+	{`settings{ noise = 0 / 0 }`, `settings: noise must be a number from 0.01 to 50 L*, or 0 for none, got not a number (NaN)`},
 	{`settings{ tone = "filmic" }`, `settings: tone must be one of "neutral", "clip", "reinhard" or "aces", got "filmic"`},
 	{`settings{ formats = { "png", "png" } }`, `settings: formats names "png" twice`},
-	{`settings{ passes = "diffus" }`, `settings: passes must be one of "diffuse", "specular", "ambient", "emission", "depth" or "normal", got "diffus"; did you mean "diffuse"?`},
+	{`settings{ passes = "diffus" }`, `settings: passes must be one of "diffuse", "specular", "ambient", "emission", "depth", "normal", "samples" or "noise", got "diffus"; did you mean "diffuse"?`},
 	{`settings{ background = {0.2, 0.2, 0.2} }`, `settings: background must be a colour or "transparent", got {0.2, 0.2, 0.2}: write color.linear(0.2, 0.2, 0.2) if these are amounts of light, color.srgb(0.2, 0.2, 0.2) if they were read off a screen`},
 	{`frame{ things = {} }`, `frame: things must hold at least one thing`},
 	{ball + `frame{ things = { ball }, name = "a/b" }`, `frame: name must be letters, digits, '.', '_' and '-', at most 120 of them and not '.' first, got "a/b"`},

@@ -197,6 +197,43 @@ func TestForced(t *testing.T) {
 	}
 }
 
+// TestNoiseAndSeed: a frame's own noise and seed win over those in settings and leave them as they are; 0 takes the target back.
+func TestNoiseAndSeed(t *testing.T) {
+	p, err := plan(t, newEnv(), ball+`
+		settings{ noise = 0.5, samples = 256, seed = 3, passes = { "samples", "noise" } }
+		for i = 1, 3 do frame{ things = { ball }, name = "at-" .. i, seed = i * 10 } end
+		frame{ things = { ball }, name = "plain", noise = 0 }
+		frame{ things = { ball }, name = "fine", noise = 0.1, seed = 4294967295 }`)
+	if err != nil {
+		t.Fatal(message(err))
+	}
+	for i, want := range []struct {
+		noise float64
+		seed  uint32
+	}{{0.5, 10}, {0.5, 20}, {0.5, 30}, {0, 3}, {0.1, 4294967295}} {
+		s := p.Frames[i].Settings
+		if s.Noise != want.noise || s.Seed != want.seed || s.Samples != 256 || !slices.Equal(s.Passes, []model.Pass{model.PassSamples, model.PassNoise}) {
+			t.Errorf("frame %s: settings %+v, want noise %v and seed %d", p.Frames[i].Name, s, want.noise, want.seed)
+		}
+	}
+}
+
+// TestDraftNoise: with a quarter of the rays the error doubles, and so does what is asked for.
+func TestDraftNoise(t *testing.T) {
+	e := newEnv()
+	e.Forced.Draft = true
+	p, err := plan(t, e, ball+`
+		for i, noise in ipairs{ 0, 0.5, 40 } do frame{ things = { ball }, name = "at-" .. i, noise = noise } end`)
+	if err != nil {
+		t.Fatal(message(err))
+	}
+	for i, want := range []float64{0, 1, model.MaxNoise} {
+		if got := p.Frames[i].Settings.Noise; got != want {
+			t.Errorf("noise %v in a draft, want %v", got, want)
+		}
+	}
+}
+
 func TestParams(t *testing.T) {
 	e := newEnv()
 	e.Overrides = []Override{{"gloss", "1"}, {"gloss", "64"}, {"tint", "#123456"}, {"ground", "false"}}

@@ -13,7 +13,7 @@ type settings struct {
 	exposure exposure
 }
 
-const settingsKeys = "size samples light_samples seed filter exposure tone white background passes formats"
+const settingsKeys = "size samples noise light_samples seed filter exposure tone white background passes formats"
 
 func settingsCalls() []call {
 	return []call{{name: "settings", keys: settingsKeys, run: func(a *args) lua.LValue {
@@ -44,7 +44,7 @@ func (e *Env) aspect() float64 {
 var (
 	filterWords = []string{model.BlackmanHarris: "blackman_harris", model.BoxFilter: "box"}
 	toneWords   = []string{model.ToneNeutral: "neutral", model.ToneClip: "clip", model.ToneReinhard: "reinhard", model.ToneACES: "aces"}
-	passWords   = wordsFrom(model.PassDiffuse, model.PassNormal)
+	passWords   = wordsFrom(model.PassDiffuse, model.PassNoise)
 	formatWords = []string{model.FormatPNG: "png", model.FormatPNG16: "png16", model.FormatEXR: "exr", model.FormatEXRHalf: "exr_half"}
 )
 
@@ -73,6 +73,13 @@ func (a *args) readSettings(s *settings) {
 		}
 	}
 	a.integer("samples", &s.Samples, 1, model.MaxSamples)
+	if v := a.get("noise"); v != lua.LNil {
+		if n, ok := v.(lua.LNumber); !ok || n != 0 && !between(model.MinNoise, model.MaxNoise, "").admits(float64(n)) {
+			a.failf("noise must be a number from %s to %s L*, or 0 for none, got %s", number(model.MinNoise), number(model.MaxNoise), describe(v))
+		} else {
+			s.Noise = float64(n)
+		}
+	}
 	a.integer("light_samples", &s.LightSamples, 1, model.MaxLightSamples)
 	seed := int(s.Seed)
 	a.integer("seed", &seed, 0, 1<<32-1)
@@ -136,5 +143,6 @@ func (f Forced) apply(s *settings) {
 	if f.Draft {
 		s.Width, s.Height = max(1, s.Width/2), max(1, s.Height/2)
 		s.Samples = max(1, s.Samples/4)
+		s.Noise = min(2*s.Noise, model.MaxNoise) // a quarter of the rays doubles the error
 	}
 }
