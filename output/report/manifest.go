@@ -38,6 +38,7 @@ func WriteManifest(w io.Writer, r Run) error {
 		m.Frames = append(m.Frames, frameForm{
 			Name: f.Name, State: f.State, Reason: f.Reason, Tags: f.Tags, Hash: f.Hash, Files: orNone(f.Files),
 			Settings: settingsOf(&f.Settings), CameraRays: f.CameraRays, ShadowRays: f.ShadowRays,
+			Samples: f.Samples, Noise: f.Noise,
 		})
 		m.Totals.CameraRays += f.CameraRays
 		m.Totals.ShadowRays += f.ShadowRays
@@ -102,12 +103,15 @@ type frameForm struct {
 	Settings   *settingsForm `json:"settings"` // null where the frame has none, because it failed in the scene
 	CameraRays int64         `json:"camera_rays"`
 	ShadowRays int64         `json:"shadow_rays"`
+	Samples    float64       `json:"samples"`         // that a pixel took, in the mean
+	Noise      float64       `json:"noise,omitempty"` // as estimated, L*; where the settings ask for it
 }
 
 // settingsForm is a frame's settings in the words of scenes. A field whose value does not count is left out.
 type settingsForm struct {
 	Size         [2]int      `json:"size"`
 	Samples      int         `json:"samples"`
+	Noise        float64     `json:"noise,omitempty"` // target, L*
 	LightSamples int         `json:"light_samples"`
 	Seed         uint32      `json:"seed"`
 	Filter       string      `json:"filter"`
@@ -124,7 +128,7 @@ func settingsOf(s *model.Settings) *settingsForm {
 		return nil
 	}
 	f := &settingsForm{
-		Size: [2]int{s.Width, s.Height}, Samples: s.Samples, LightSamples: s.LightSamples, Seed: s.Seed, Filter: filterWord(s.Filter),
+		Size: [2]int{s.Width, s.Height}, Samples: s.Samples, Noise: s.Noise, LightSamples: s.LightSamples, Seed: s.Seed, Filter: filterWord(s.Filter),
 		Exposure: s.Exposure, Tone: toneWord(s.Tone), Passes: []string{}, Formats: []string{},
 	}
 	if s.Tone == model.ToneReinhard {

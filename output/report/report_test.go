@@ -25,9 +25,10 @@ func number(x float64) model.Value { return model.Value{Kind: model.NumberValue,
 
 // workshop is a run of three frames: one done, one that failed, one that waits.
 func workshop() Run {
-	settings := model.Settings{Width: 480, Height: 360, Samples: 64, LightSamples: 16, Seed: 7, Exposure: -1.5,
-		Background: model.Background{Color: tint.Grey(0.25)}, Passes: []model.Pass{model.PassDiffuse, model.PassDepth}, Formats: []model.Format{model.FormatPNG, model.FormatEXRHalf}}
+	settings := model.Settings{Width: 480, Height: 360, Samples: 64, Noise: 0.5, LightSamples: 16, Seed: 7, Exposure: -1.5,
+		Background: model.Background{Color: tint.Grey(0.25)}, Passes: []model.Pass{model.PassDiffuse, model.PassDepth, model.PassSamples, model.PassNoise}, Formats: []model.Format{model.FormatPNG, model.FormatEXRHalf}}
 	glossy := settings
+	glossy.Noise = 0
 	glossy.Tone, glossy.White, glossy.Filter, glossy.Background.Transparent = model.ToneReinhard, 4, model.BoxFilter, true
 	return Run{
 		Engine: "1.0.0", Scene: "scenes/bowls.lua", PlanHash: "3fa0b1c2d9", Stamp: "autumn build",
@@ -36,7 +37,7 @@ func workshop() Run {
 		Sheets:   []SheetRecord{{Name: "bowls", Files: []string{"sheets/bowls.png"}}, {Name: "late", Reason: "the run was stopped"}},
 		Frames: []FrameRecord{
 			{Name: "bowl-16", Tags: []model.Tag{{Key: "gloss", Value: number(16)}, {Key: "glaze", Value: model.Value{Text: "céladon, \"pale\""}}},
-				Hash: "ab12", State: Done, Files: []string{"frames/bowl-16.png", "frames/bowl-16.exr"}, Settings: settings, CameraRays: 11_059_200, ShadowRays: 40_000_000, Seconds: 1.25},
+				Hash: "ab12", State: Done, Files: []string{"frames/bowl-16.png", "frames/bowl-16.exr"}, Settings: settings, CameraRays: 7_000_000, ShadowRays: 40_000_000, Samples: 40.509259, Noise: 0.4375, Seconds: 1.25},
 			{Name: "bowl-bad", Tags: []model.Tag{{Key: "glaze", Value: model.Value{Text: "=1+1"}}, {Key: "state", Value: model.Value{Kind: model.TruthValue, Truth: true}}},
 				Hash: "cd34", State: Failed, Reason: "bowl.obj:3: no faces"},
 			{Name: "bowl-256", Tags: []model.Tag{{Key: "gloss", Value: number(-0.5)}}, Hash: "ef56", State: Waiting, Settings: glossy},
@@ -133,7 +134,7 @@ func TestManifestReads(t *testing.T) {
 		if f.Reason != text || f.Tags["z"] != text || f.Tags["a <b>"] != x || f.State != "failed" {
 			t.Fatalf("got %+v", f)
 		}
-		if got.Totals.Frames != 3 || got.Totals.Done != 1 || got.Totals.Failed != 1 || got.Totals.Waiting != 1 || got.Totals.CameraRays != 11_059_200 {
+		if got.Totals.Frames != 3 || got.Totals.Done != 1 || got.Totals.Failed != 1 || got.Totals.Waiting != 1 || got.Totals.CameraRays != 7_000_000 {
 			t.Fatalf("totals %+v", got.Totals)
 		}
 		if got.Times.FrameSeconds["bowl-16"] != 1.25 {
@@ -193,6 +194,7 @@ func TestRefuses(t *testing.T) {
 		{func(r *Run) { r.Frames[1].Name = "bowl-16" }, `frame "bowl-16" is there twice`},
 		{func(r *Run) { r.Frames[0].Tags[0].Value.Number = math.NaN() }, "tag gloss must be a finite number"},
 		{func(r *Run) { r.Frames[0].Tags[1].Key = "gloss" }, "tag gloss is there twice"},
+		{func(r *Run) { r.Frames[0].Noise = math.Inf(1) }, `frame "bowl-16": samples and noise must be finite numbers`},
 		{func(r *Run) { r.Frames[0].Seconds = math.Inf(1) }, "must be finite"},
 		{func(r *Run) { r.Times.CPU = math.NaN() }, "finite numbers of seconds"},
 	} {

@@ -31,6 +31,8 @@ type FrameRecord struct {
 	Settings   model.Settings // the zero value where the scene gave none
 	CameraRays int64          // cast for it, or its share of a cast
 	ShadowRays int64
+	Samples    float64 // camera rays that a pixel took, in the mean; 0 where there is no picture
+	Noise      float64 // standard error, L*, as estimated; 0 where the settings do not ask for it
 	Seconds    float64 // of work; goes to the manifest's times
 }
 
@@ -80,6 +82,8 @@ func (r *Run) check() error {
 			return fmt.Errorf("frame %q: state %q is not known", f.Name, f.State)
 		case seen[f.Name]:
 			return fmt.Errorf("frame %q is there twice", f.Name)
+		case !finite(f.Samples) || !finite(f.Noise) || !finite(f.Settings.Noise):
+			return fmt.Errorf("frame %q: samples and noise must be finite numbers", f.Name)
 		case !finite(f.Seconds) || !finite(f.Settings.Exposure) || !finite(f.Settings.White):
 			return fmt.Errorf("frame %q: seconds, exposure and white must be finite numbers", f.Name)
 		}
@@ -115,5 +119,5 @@ func filterWord(f model.Filter) string { return word(f, "blackman_harris", "box"
 func toneWord(t model.Tone) string     { return word(t, "neutral", "clip", "reinhard", "aces") }
 func formatWord(f model.Format) string { return word(f, "png", "png16", "exr", "exr_half") }
 func passWord(p model.Pass) string {
-	return word(p, "diffuse", "specular", "ambient", "emission", "depth", "normal")
+	return word(p, "diffuse", "specular", "ambient", "emission", "depth", "normal", "samples", "noise")
 }

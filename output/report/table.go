@@ -14,7 +14,7 @@ import (
 // columns of frames.csv that stand before and after the tags.
 var (
 	columnsBefore = []string{"name", "state"}
-	columnsAfter  = []string{"reason", "hash", "width", "height", "samples", "light_samples", "seed", "filter", "exposure", "tone", "camera_rays", "shadow_rays", "files"}
+	columnsAfter  = []string{"reason", "hash", "width", "height", "samples", "noise", "light_samples", "seed", "filter", "exposure", "tone", "samples_taken", "noise_left", "camera_rays", "shadow_rays", "files"}
 )
 
 // WriteFrames writes frames.csv: a row a frame, a column a tag (in first-seen order; empty where a frame lacks it), after RFC 4180, in
@@ -54,6 +54,7 @@ func WriteFrames(w io.Writer, r Run) error {
 			tags[at[t.Key]] = cell(t.Value)
 		}
 		row := slices.Concat([]string{harmless(f.Name), string(f.State)}, tags, []string{harmless(f.Reason), f.Hash}, settingCells(&f.Settings), []string{
+			measured(f.Samples), measured(f.Noise),
 			strconv.FormatInt(f.CameraRays, 10), strconv.FormatInt(f.ShadowRays, 10), harmless(strings.Join(f.Files, " ")),
 		})
 		writeRow(out, row)
@@ -79,12 +80,20 @@ func writeRow(w *bufio.Writer, cells []string) {
 // settingCells are the cells from width to tone; empty where the frame has no settings, because it failed in the scene.
 func settingCells(s *model.Settings) []string {
 	if s.Width == 0 {
-		return make([]string, 8)
+		return make([]string, 9)
 	}
 	return []string{
-		strconv.Itoa(s.Width), strconv.Itoa(s.Height), strconv.Itoa(s.Samples), strconv.Itoa(s.LightSamples), strconv.FormatUint(uint64(s.Seed), 10),
+		strconv.Itoa(s.Width), strconv.Itoa(s.Height), strconv.Itoa(s.Samples), measured(s.Noise), strconv.Itoa(s.LightSamples), strconv.FormatUint(uint64(s.Seed), 10),
 		filterWord(s.Filter), strconv.FormatFloat(s.Exposure, 'g', -1, 64), toneWord(s.Tone),
 	}
+}
+
+// measured is a number that was asked for or found; empty where there is none.
+func measured(v float64) string {
+	if v == 0 {
+		return ""
+	}
+	return strconv.FormatFloat(v, 'g', 6, 64)
 }
 
 func cell(v model.Value) string {

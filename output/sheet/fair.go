@@ -25,6 +25,7 @@ var comparedSettings = [...]struct {
 }{
 	{"size", []string{"size", "width", "height", "resolution"}, func(s *model.Settings) string { return sizeText(s.Width, s.Height) }},
 	{"samples", []string{"samples"}, func(s *model.Settings) string { return number(float64(s.Samples), 17) }},
+	{"noise", []string{"noise"}, func(s *model.Settings) string { return noiseText(s.Noise) }},
 	{"light samples", []string{"light_samples"}, func(s *model.Settings) string { return number(float64(s.LightSamples), 17) }},
 	{"seed", []string{"seed"}, func(s *model.Settings) string { return number(float64(s.Seed), 17) }},
 	{"filter", []string{"filter"}, func(s *model.Settings) string {
@@ -40,6 +41,16 @@ var comparedSettings = [...]struct {
 	{"exposure", []string{"exposure", "ev100"}, func(s *model.Settings) string {
 		return number(s.Exposure, 4) + thinSpace + "stops"
 	}},
+}
+
+// noNoise is how a target for noise reads that was not set.
+const noNoise = "none"
+
+func noiseText(target float64) string {
+	if target == 0 {
+		return noNoise
+	}
+	return number(target, 4) + thinSpace + "L*"
 }
 
 func nameAt(i int, names ...string) string {
@@ -73,7 +84,9 @@ func judge(p *model.Plan, pv *pivot) fairness {
 			count[texts[n]]++
 		}
 		if len(count) == 1 {
-			j.same = append(j.same, c.name)
+			if texts[0] != noNoise { // a target that nobody set is no news
+				j.same = append(j.same, c.name)
+			}
 			continue
 		}
 		if slices.ContainsFunc(pv.keys(), func(key string) bool { return announces(key, c.tags) }) {
@@ -153,7 +166,7 @@ func (j fairness) line() string {
 	if len(j.notes) > 0 {
 		parts = append(parts, "Not alike: "+strings.Join(j.notes, "; "))
 	}
-	if len(j.same) == len(comparedSettings) {
+	if len(j.same) > 0 && len(j.notes) == 0 && len(j.tagged) == 0 {
 		parts = append(parts, "Settings alike")
 	} else if len(j.same) > 0 {
 		parts = append(parts, "Same "+list(j.same, "and"))

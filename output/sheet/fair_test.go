@@ -44,6 +44,13 @@ func TestFairness(t *testing.T) {
 		}, nil, "", "What differs: camera, things and background. Settings alike"},
 		{"one of four", func(p *model.Plan) { p.Frames[2].Settings.Samples = 16 }, nil, "2",
 			"Not alike: samples 64, marked tiles 16. Same size, light samples, seed, filter, tone and exposure"},
+		{"noise", func(p *model.Plan) { p.Frames[1].Settings.Noise = 0.5 }, nil, "1", "Not alike: noise none, marked tiles 0.5\u2009L*"},
+		{"one noise", func(p *model.Plan) {
+			for i := range p.Frames {
+				p.Frames[i].Settings.Noise = 0.5
+			}
+			p.Frames[3].Settings.Samples = 256
+		}, nil, "3", "Not alike: samples 64, marked tiles 256. Same size, noise, light samples, seed, filter, tone and exposure"},
 		{"the first is the odd one", func(p *model.Plan) { p.Frames[0].Settings.Tone = model.ToneACES }, nil, "0", "Not alike: tone neutral, marked tiles ACES"},
 		{"two and two: the first pair counts as common", func(p *model.Plan) { p.Frames[2].Settings.Seed = 7; p.Frames[3].Settings.Seed = 7 }, nil, "2 3",
 			"Not alike: seed 0, marked tiles 7"},

@@ -314,6 +314,17 @@ func TestFoot(t *testing.T) {
 	if got, want := strings.Join(c.foot[0], "|"), "scenes/bowls.lua|various sizes|16 and 64 samples|plan 3fa0|build 7"; got != want {
 		t.Errorf("got %q, want %q", got, want)
 	}
+	noisy := bowls()
+	for i := range noisy.Frames {
+		noisy.Frames[i].Settings.Noise = 0.25
+	}
+	_, quiet, err := plates(noisy, &model.Sheet{Name: "s", Rows: []string{"glaze"}, Columns: []string{"gloss"}}, Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if got := strings.Join(quiet.foot[0], "|"); !strings.HasSuffix(got, " samples at most|noise 0.25\u2009L*") {
+		t.Errorf("got %q, want the samples as a bound, and the noise", got)
+	}
 	if got := c.foot[1]; got[len(got)-1] != "Simulation, not a colour proof" || got[len(got)-2] != "Left out for want of a tag: 1" {
 		t.Errorf("got %q", got)
 	}

@@ -46,6 +46,7 @@ const picturePass = "picture"
 var passNames = [...]string{
 	model.PassDiffuse: "diffuse", model.PassSpecular: "specular", model.PassAmbient: "ambient",
 	model.PassEmission: "emission", model.PassDepth: "depth", model.PassNormal: "normal",
+	model.PassSamples: "samples", model.PassNoise: "noise",
 }
 
 // entry is a frame (or one of its passes) with its values along the three axes.

@@ -13,7 +13,7 @@ type Tile struct {
 }
 
 // Source fetches what stands in a place: the picture of a frame (an index into the plan's frames) where pass is "", otherwise one
-// of its passes ("diffuse", "specular", "ambient", "emission", "depth", "normal") made visible. It is called once for each place,
+// of its passes ("diffuse", "specular", "ambient", "emission", "depth", "normal", "samples", "noise") made visible. It is called once for each place,
 // in the order of drawing, so that no more than one picture need be in memory, and not for frames with a Failure in the plan.
 // An error ends the sheet.
 type Source func(frame int, pass string) (Tile, error)

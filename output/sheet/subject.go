@@ -118,7 +118,7 @@ func footOf(p *model.Plan, s *model.Sheet, pv *pivot, j fairness, f Foot) [][]st
 		}
 	}
 	add(p.Scene)
-	var sizes, samples []string
+	var sizes, samples, noises []string
 	for _, i := range pv.frames {
 		if fr := &p.Frames[i]; fr.Failure == "" {
 			if t := sizeText(fr.Settings.Width, fr.Settings.Height); !slices.Contains(sizes, t) {
@@ -126,6 +126,9 @@ func footOf(p *model.Plan, s *model.Sheet, pv *pivot, j fairness, f Foot) [][]st
 			}
 			if t := number(float64(fr.Settings.Samples), 17); !slices.Contains(samples, t) {
 				samples = append(samples, t)
+			}
+			if t := noiseText(fr.Settings.Noise); !slices.Contains(noises, t) {
+				noises = append(noises, t)
 			}
 		}
 	}
@@ -139,7 +142,12 @@ func footOf(p *model.Plan, s *model.Sheet, pv *pivot, j fairness, f Foot) [][]st
 		return list(values, "and") + unit
 	}
 	add(one(sizes, " pixels", "various sizes"))
-	add(one(samples, " samples", "various numbers of samples"))
+	if len(noises) == 0 || len(noises) == 1 && noises[0] == noNoise {
+		add(one(samples, " samples", "various numbers of samples"))
+	} else {
+		add(one(samples, " samples at most", "various numbers of samples at most"))
+		add("noise " + one(noises, "", "various"))
+	}
 	if f.PlanHash != "" {
 		add("plan " + f.PlanHash)
 	}

@@ -29,6 +29,8 @@ type outcome struct {
 	files   []string // slash-separated, relative to the run's folder
 	seconds float64  // its share of its cast, as are the rays
 	rays    render.Stats
+	samples float64 // that a pixel took, in the mean
+	noise   float64 // L*, as estimated; 0 where it was not asked for
 }
 
 func newPictures(folder *runFolder, p *model.Plan) *pictures {
@@ -41,7 +43,7 @@ func newPictures(folder *runFolder, p *model.Plan) *pictures {
 
 // take writes a frame's files, each whole or not at all. The error names the file.
 func (w *pictures) take(f run.Finished) error {
-	o := outcome{seconds: f.Time.Seconds(), rays: f.Stats}
+	o := outcome{seconds: f.Time.Seconds(), rays: f.Stats, samples: f.Samples, noise: f.Noise}
 	if f.Failure != "" {
 		o.state, o.failure = report.Failed, f.Failure
 		w.taken[f.Frame] = o
@@ -113,7 +115,7 @@ func made(p *model.Plan, h *model.Hasher, i int) encode.Options {
 			{Key: "frame", Value: f.Name},
 			{Key: "tags", Value: strings.Join(tags, "\n")},
 			{Key: "frameHash", Value: h.Frame(i).String()},
-			{Key: "settings", Value: fmt.Sprintf("size=%dx%d\nsamples=%d\nlight_samples=%d\nseed=%d", s.Width, s.Height, s.Samples, s.LightSamples, s.Seed)},
+			{Key: "settings", Value: fmt.Sprintf("size=%dx%d\nsamples=%d\nnoise=%v\nlight_samples=%d\nseed=%d", s.Width, s.Height, s.Samples, s.Noise, s.LightSamples, s.Seed)},
 		},
 		Numbers: []encode.KeyNumber{{Key: "exposure", Value: float32(s.Exposure)}},
 	}
