@@ -50,6 +50,9 @@ const steepest = 8
 // the arithmetic here adds less than 16u·reach·(1 + steepest). reach is at most twice the largest coordinate, by which 128u is taken.
 // slack, 1 or more, widens it for boxes that know less well where their contents are.
 func (s *shaft) enclose(rays []geom.Ray, bounds geom.Box, slack float32) int {
+	if strays(rays) {
+		return scattered
+	}
 	var e bundleBounds
 	bundleEnds(rays, &e)
 	if e.live == 0 {
@@ -98,6 +101,19 @@ func (s *shaft) enclose(rays []geom.Ray, bounds geom.Box, slack float32) int {
 		s.slope[i] = (ends[1] - ends[0]) / (s.z1 - s.z0)
 	}
 	return enclosed
+}
+
+// strays reports, from three of them, that rays have no axis on which all run the same way. Most scattered bundles end here.
+func strays(rays []geom.Ray) bool {
+	all, any := uint32(7), uint32(0)
+	for _, i := range [3]int{0, len(rays) / 2, len(rays) - 1} {
+		r := &rays[i]
+		if r.TMin < r.TMax {
+			signs := math.Float32bits(r.Dir.X)>>31 | math.Float32bits(r.Dir.Y)>>31<<1 | math.Float32bits(r.Dir.Z)>>31<<2
+			all, any = all&signs, any|signs
+		}
+	}
+	return any&^all == 7
 }
 
 func abs32(x float32) float32 { return math.Float32frombits(math.Float32bits(x) &^ (1 << 31)) }
