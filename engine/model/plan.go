@@ -140,7 +140,8 @@ type Tone uint8
 
 // The tone curves of the render model.
 const (
-	ToneNeutral Tone = iota
+	ToneShoulder Tone = iota // identity up to 0.8, then compressed
+	ToneNeutral              // Khronos PBR Neutral
 	ToneClip
 	ToneReinhard
 	ToneACES

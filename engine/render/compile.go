@@ -41,6 +41,7 @@ type placed struct {
 	identity        bool
 	mirror          float64 // -1 where worldFromObject mirrors, else 1
 	firstSurface    int32
+	stretch         float32 // largest factor by which a length grows from object to world space
 	reach           float32 // largest coordinate of the mesh in object space, times the largest stretch, plus the move: metres
 }
 
@@ -112,6 +113,7 @@ func compile(c Cast, build func(model.MeshID) (*mesh.Mesh, *bvh.Tree, error)) (*
 		pl := placed{
 			mesh: m, worldFromObject: worldFromObject, identity: worldFromObject == geom.Identity(),
 			mirror: math.Copysign(1, worldFromObject.Det()), firstSurface: int32(len(out.surfaces)), reach: reach(tree.Bounds(), worldFromObject),
+			stretch: float32(max(math.Abs(t.Scale[0]), math.Abs(t.Scale[1]), math.Abs(t.Scale[2]))),
 		}
 		out.placed = append(out.placed, pl)
 		for range m.SlotNames {

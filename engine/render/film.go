@@ -163,6 +163,8 @@ func encode(x float32) float32 { return tint.EncodeSRGB(min(max(x, 0), 1)) }
 // tone applies the settings' tone curve; the result may still be above 1 where the curve does not end.
 func tone(c tint.RGB, s model.Settings) tint.RGB {
 	switch s.Tone {
+	case model.ToneShoulder:
+		return tint.Shoulder(c)
 	case model.ToneNeutral:
 		return tint.Neutral(c)
 	case model.ToneReinhard:

@@ -282,3 +282,36 @@ func TestDim(t *testing.T) {
 		t.Errorf("coverage of a floor is %v, want 1", m)
 	}
 }
+
+// TestSlivers lights a bent wall made of strips 3 m long and 7 mm wide, as a seamless ground is: it must show no shadow of its own.
+func TestSlivers(t *testing.T) {
+	for _, scale := range []float64{0.01, 1, 100} {
+		raw := &model.RawMesh{}
+		const strips = 24
+		for i := range strips + 1 {
+			// A quarter turn of 12 cm radius about (0, 0.12, 0), from the floor up the wall behind.
+			sin, cos := math.Sincos(math.Pi / 2 * float64(i) / strips)
+			for _, x := range []float64{-1.5, 1.5} {
+				raw.Positions = append(raw.Positions, [3]float64{x, 0.12 - 0.12*cos, -0.12 * sin})
+				raw.Normals = append(raw.Normals, [3]float64{0, cos, sin})
+			}
+			if k := uint32(2 * i); i < strips {
+				raw.Triangles = append(raw.Triangles, [3]uint32{k, k + 1, k + 3}, [3]uint32{k, k + 3, k + 2})
+			}
+		}
+		shot := func(noShadow bool) []float32 {
+			var s studio
+			bend := s.thing(model.Mesh{Kind: model.MeshRaw, Raw: raw}, matt(0.5))
+			bend.Scale = [3]float64{scale, scale, scale}
+			lamp := model.Light{Name: "lamp", Kind: model.LightPoint, Intensity: 5 * scale * scale, Position: [3]float64{-0.6 * scale, 0.7 * scale, 0.5 * scale}, NoShadow: noShadow}
+			cam := lens([3]float64{0.9 * scale, 0.3 * scale, 0.8 * scale}, [3]float64{0.3 * scale, 0.05 * scale, -0.05 * scale}, 50)
+			return s.shoot(t, cam, square(64, 16), s.lights(lamp), bend).Plane("G")
+		}
+		with, without := shot(false), shot(true)
+		for i := range with {
+			if with[i] != without[i] {
+				t.Fatalf("scale %v: pixel %d, %d has %v, without shadows %v", scale, i%64, i/64, with[i], without[i])
+			}
+		}
+	}
+}

@@ -12,6 +12,19 @@ import (
 // most four units in the last place, 2^-22, of the largest coordinate).
 const offGround = 1.0 / (1 << 18)
 
+// thin is the ratio of a triangle's longer edge, squared, to twice its area from which on it counts as a sliver. The test of a ray
+// against a sliver finds its distance with an error that grows with that ratio: its edge functions are differences of products as large as the
+// edge squared, divided by twice the area.
+const thin = 16
+
+// offSliver returns how much farther off a sliver shadow rays must start, metres: four units in the last place, 2^-22, of the edge, times
+// the ratio, at most a thousandth of the edge. edge2 and n, the cross product of two edges, are in object space.
+func (pl *placed) offSliver(edge2 float32, n geom.Vec3) float32 {
+	edge := float32(math.Sqrt(float64(edge2)))
+	area := float32(math.Sqrt(float64(n.Dot(n))))
+	return pl.stretch * min(float32(edge*edge2)/area*(1.0/(1<<22)), edge*(1.0/1024))
+}
+
 // surfaceOf returns the cast's surface that a hit lies on.
 func (c *cast) surfaceOf(h *bvh.Hit) int32 {
 	pl := &c.placed[h.Placement]
@@ -60,8 +73,11 @@ func (c *cast) interact(h *bvh.Hit, ray *geom.Ray, pt *hit) (surface int32) {
 			}
 		}
 	}
-	largest := max(pl.reach, abs(pt.p.X), abs(pt.p.Y), abs(pt.p.Z))
-	pt.shadow = start.AddScaled(largest*offGround, ng)
+	off := max(pl.reach, abs(pt.p.X), abs(pt.p.Y), abs(pt.p.Z)) * offGround
+	if edge2 := max(b.Sub(a).Dot(b.Sub(a)), d.Sub(a).Dot(d.Sub(a))); float32(edge2*edge2) > thin*thin*ngObject.Dot(ngObject) {
+		off += pl.offSliver(edge2, ngObject)
+	}
+	pt.shadow = start.AddScaled(off, ng)
 	return c.surfaceOf(h)
 }
 

@@ -13,7 +13,7 @@
 ---@field seed? integer of the sample points, 0 to 4294967295: one for stills and comparisons, each frame's own for an animation; default as in settings
 ---@field filter? "blackman_harris"|"box" of pixels; default as in settings
 ---@field exposure? number stops, -100 to 100; default as in settings
----@field tone? "neutral"|"clip"|"reinhard"|"aces" curve from light to screen; default as in settings
+---@field tone? "shoulder"|"neutral"|"clip"|"reinhard"|"aces" curve from light to screen; default as in settings
 ---@field white? number tone "reinhard": the luminance that becomes white, > 0; default as in settings
 ---@field background? color|"transparent" what shows where nothing stands; default as in settings
 ---@field passes? string|string[] planes beside the picture: "diffuse", "specular", "ambient", "emission", "depth", "normal", "samples" (camera rays that each pixel took), "noise" (its error as estimated, in L*); default as in settings

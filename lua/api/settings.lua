@@ -8,7 +8,7 @@
 ---@field seed? integer of the sample points, 0 to 4294967295: keep one for stills and comparisons, so that tiles differ by what they show and not by their noise; give each frame of an animation its own, or its noise stands still before what moves; default 0
 ---@field filter? "blackman_harris"|"box" of pixels; default "blackman_harris"
 ---@field exposure? number stops, -100 to 100; default metered among the things of the first frame that states none, and held from there on
----@field tone? "neutral"|"clip"|"reinhard"|"aces" curve from light to screen; default "neutral"
+---@field tone? "shoulder"|"neutral"|"clip"|"reinhard"|"aces" curve from light to screen: shoulder leaves colours up to 0.8 as they are and compresses highlights, neutral is the Khronos curve for surfaces with a 4 % reflection, aces a published fit; default "shoulder"
 ---@field white? number tone "reinhard": the luminance that becomes white, > 0; default 4
 ---@field background? color|"transparent" what shows where nothing stands; default color.grey(0.18)
 ---@field passes? string|string[] planes beside the picture: "diffuse", "specular", "ambient", "emission", "depth", "normal", "samples" (camera rays that each pixel took), "noise" (its error as estimated, in L*); default none

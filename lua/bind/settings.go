@@ -43,7 +43,7 @@ func (e *Env) aspect() float64 {
 // Words for the choices of settings, by the values of model.
 var (
 	filterWords = []string{model.BlackmanHarris: "blackman_harris", model.BoxFilter: "box"}
-	toneWords   = []string{model.ToneNeutral: "neutral", model.ToneClip: "clip", model.ToneReinhard: "reinhard", model.ToneACES: "aces"}
+	toneWords   = []string{model.ToneShoulder: "shoulder", model.ToneNeutral: "neutral", model.ToneClip: "clip", model.ToneReinhard: "reinhard", model.ToneACES: "aces"}
 	passWords   = wordsFrom(model.PassDiffuse, model.PassNoise)
 	formatWords = []string{model.FormatPNG: "png", model.FormatPNG16: "png16", model.FormatEXR: "exr", model.FormatEXRHalf: "exr_half"}
 )

@@ -76,8 +76,8 @@ function stands.cove(given)
 end
 
 --- A grey reference sphere, perfectly matt: it shows exposure, the light's direction and its colour. 18 % reflects as the grey card does;
---- where it faces a metered light it reads 0.18, L* 49.5, sRGB 118. That is before the tone curve, or with tone = "clip": "neutral" shows
---- what is matt 0.04 darker, the share that it keeps for highlights.
+--- where it faces a metered light it reads 0.18, L* 49.5, sRGB 118 (with tone = "neutral" it shows deeper: that curve takes off
+--- 0.04 for a reflection that matt things lack).
 ---   radius        its own, > 0; default 0.03
 ---   at            where it stands, its lowest point; default the origin
 ---   reflectance   0 to 1; default 0.18

@@ -116,7 +116,7 @@ func word[T ~uint8](v T, words ...string) string {
 }
 
 func filterWord(f model.Filter) string { return word(f, "blackman_harris", "box") }
-func toneWord(t model.Tone) string     { return word(t, "neutral", "clip", "reinhard", "aces") }
+func toneWord(t model.Tone) string     { return word(t, "shoulder", "neutral", "clip", "reinhard", "aces") }
 func formatWord(f model.Format) string { return word(f, "png", "png16", "exr", "exr_half") }
 func passWord(p model.Pass) string {
 	return word(p, "diffuse", "specular", "ambient", "emission", "depth", "normal", "samples", "noise")

@@ -32,7 +32,7 @@ var comparedSettings = [...]struct {
 		return nameAt(int(s.Filter), "Blackman-Harris", "box")
 	}},
 	{"tone", []string{"tone", "white"}, func(s *model.Settings) string {
-		text := nameAt(int(s.Tone), "neutral", "clip", "Reinhard", "ACES")
+		text := nameAt(int(s.Tone), "shoulder", "neutral", "clip", "Reinhard", "ACES")
 		if s.Tone == model.ToneReinhard {
 			text += " to " + number(s.White, 4)
 		}

@@ -23,31 +23,37 @@ func Clip(c RGB) RGB {
 	return RGB{min(c.R, 1), min(c.G, 1), min(c.B, 1)}
 }
 
-// Neutral keeps base colours up to 0.8 as they are, less a small offset that undoes the 4 % reflection of a dielectric,
-// and compresses what is brighter towards 1, paler the brighter it is.
+// Shoulder leaves colours up to a peak of 0.8 as they are, so that matt cards show their own colour, and compresses what
+// is brighter towards 1, paler the brighter it is: the compression of Neutral alone.
+func Shoulder(c RGB) RGB { return compress(c.limited(), 0.8) }
+
+// Neutral is made for surfaces that reflect 4 % at their top, as plastic and glass do: it takes that off, and then
+// compresses as Shoulder does. Colours of surfaces without such a reflection come out deeper than they are: 18 % grey shows as 14 %.
 // Source: Khronos PBR Neutral tone mapper, specification 1.0.
 func Neutral(c RGB) RGB {
-	const (
-		reflection       = 0.04
-		startCompression = 0.8 - reflection
-		desaturation     = 0.15
-	)
+	const reflection = 0.04
 	c = c.limited()
 	x := min(c.R, c.G, c.B)
 	offset := float32(reflection)
 	if x < 2*reflection {
 		offset = x - float32(x*x)/(4*reflection)
 	}
-	c = RGB{c.R - offset, c.G - offset, c.B - offset}
+	return compress(RGB{c.R - offset, c.G - offset, c.B - offset}, 0.8-reflection)
+}
+
+// compress brings colours whose largest component is above start, in (0, 1), smoothly below 1, and desaturates them by how much they
+// were brought down. Source: Khronos PBR Neutral tone mapper, specification 1.0.
+func compress(c RGB, start float32) RGB {
+	const desaturation = 0.15
 	peak := max(c.R, c.G, c.B)
-	if peak < startCompression {
+	if peak < start {
 		return c
 	}
-	const d = 1 - startCompression
-	newPeak := 1 - float32(d*d)/(peak+(d-startCompression))
+	d := 1 - start
+	newPeak := 1 - float32(d*d)/(peak+(d-start))
 	c = c.Scale(newPeak / peak)
 	g := 1 / (float32(desaturation*(peak-newPeak)) + 1)
-	return c.Scale(g).Add(Grey(float32(newPeak * (1 - g))))
+	return c.Scale(g).Add(Grey(newPeak * (1 - g)))
 }
 
 // Reinhard compresses luminance by L(1 + L/white²)/(1 + L), so that luminance white becomes 1; white > 0. Hue and

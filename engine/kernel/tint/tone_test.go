@@ -33,6 +33,21 @@ func TestNeutral(t *testing.T) {
 	}
 }
 
+// TestShoulder checks that base colours stay, and that the compression is the specification's.
+func TestShoulder(t *testing.T) {
+	for _, c := range []RGB{{}, Grey(0.18), {0.7, 0.3, 0.05}, Grey(0.79)} {
+		if got := Shoulder(c); got != c {
+			t.Errorf("%v becomes %v, want itself", c, got)
+		}
+	}
+	// Source: Khronos PBR Neutral tone mapper, specification 1.0, with the knee at 0.8 and no offset: 1 - 0.2² / (x + 0.2 - 0.8).
+	for _, c := range []struct{ x, want float64 }{{0.8, 0.8}, {1, 0.9}, {2, 1 - 0.04/1.4}, {100, 1 - 0.04/99.4}} {
+		if got := Shoulder(Grey(float32(c.x))); !near(got, Grey(float32(c.want)), 1e-6) {
+			t.Errorf("grey %v becomes %v, want %v", c.x, got, c.want)
+		}
+	}
+}
+
 // neutral64 is the specification's reference code, in float64.
 func neutral64(r, g, b float64) RGB {
 	x := min(r, g, b)
@@ -85,7 +100,7 @@ func TestACES(t *testing.T) {
 // greys grey, and never make a brighter grey darker.
 func TestToneConformance(t *testing.T) {
 	for name, curve := range map[string]func(RGB) RGB{
-		"clip": Clip, "neutral": Neutral, "aces": ACES, "reinhard": func(c RGB) RGB { return Reinhard(c, 4) },
+		"clip": Clip, "shoulder": Shoulder, "neutral": Neutral, "aces": ACES, "reinhard": func(c RGB) RGB { return Reinhard(c, 4) },
 	} {
 		t.Run(name, func(t *testing.T) {
 			if got := curve(RGB{}); !got.Black() {
