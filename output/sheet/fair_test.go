@@ -51,7 +51,7 @@ func TestFairness(t *testing.T) {
 			}
 			p.Frames[3].Settings.Samples = 256
 		}, nil, "3", "Not alike: samples 64, marked tiles 256. Same size, noise, light samples, seed, filter, tone and exposure"},
-		{"the first is the odd one", func(p *model.Plan) { p.Frames[0].Settings.Tone = model.ToneACES }, nil, "0", "Not alike: tone neutral, marked tiles ACES"},
+		{"the first is the odd one", func(p *model.Plan) { p.Frames[0].Settings.Tone = model.ToneACES }, nil, "0", "Not alike: tone shoulder, marked tiles ACES"},
 		{"two and two: the first pair counts as common", func(p *model.Plan) { p.Frames[2].Settings.Seed = 7; p.Frames[3].Settings.Seed = 7 }, nil, "2 3",
 			"Not alike: seed 0, marked tiles 7"},
 		{"white counts with reinhard only", func(p *model.Plan) { p.Frames[1].Settings.White = 4 }, nil, "", "Settings alike"},
