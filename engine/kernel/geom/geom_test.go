@@ -79,25 +79,6 @@ func TestAffineProperties(t *testing.T) {
 	})
 }
 
-func TestFrame(t *testing.T) {
-	rapid.Check(t, func(t *rapid.T) {
-		n := drawVec(t, "n", 1)
-		if n.Len() < 1e-3 {
-			t.Skip("no direction")
-		}
-		u := n.Unit().Narrow()
-		a, b := Frame(u)
-		for _, x := range []float32{a.Dot(b), a.Dot(u), b.Dot(u), a.Len() - 1, b.Len() - 1} {
-			if math.Abs(float64(x)) > 1e-5 {
-				t.Fatalf("frame of %v is not orthonormal: %v, %v", u, a, b)
-			}
-		}
-		if a.Cross(b).Dot(u) < 0.99 {
-			t.Fatalf("frame of %v is left-handed", u)
-		}
-	})
-}
-
 func TestVec3(t *testing.T) {
 	if (Vec3{}).Unit() != (Vec3{}) {
 		t.Error("the unit of zero is not zero")

@@ -60,17 +60,6 @@ func (a Vec3) Finite() bool {
 	return s == 0
 }
 
-// Frame returns two unit vectors that with the unit vector n make a right-handed orthonormal basis (t, b, n).
-// Source: Duff et al. 2017, "Building an orthonormal basis, revisited", listing 3.
-func Frame(n Vec3) (t, b Vec3) {
-	sign := float32(math.Copysign(1, float64(n.Z)))
-	a := -1 / (sign + n.Z)
-	c := n.X * n.Y * a
-	t = Vec3{1 + float32(sign*float32(n.X*n.X)*a), sign * c, -sign * n.X}
-	b = Vec3{c, sign + float32(n.Y*n.Y*a), -n.Y}
-	return t, b
-}
-
 // Ray is the set of points Org + t·Dir for t in (TMin, TMax). Dir need not be unit; t counts in lengths of Dir.
 type Ray struct {
 	Org, Dir   Vec3 // world space unless the name says otherwise

@@ -37,7 +37,7 @@ func BenchmarkPrepare(b *testing.B) {
 
 func BenchmarkSample(b *testing.B) {
 	uv := make([][2]float32, 256)
-	sample.PixelKey(1, 2, 3).Points(0, uv)
+	sample.Key(123).Points(0, uv)
 	for _, c := range benchLamps {
 		l := New(c.spec)
 		b.Run(c.name, func(b *testing.B) {

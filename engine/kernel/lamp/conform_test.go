@@ -120,7 +120,7 @@ func TestConformance(t *testing.T) {
 				}
 				far := []float64{0.01, 1, 1, 10, 1000}[r.IntN(5)]
 				p := s.Position.Add(vec(far)).Narrow()
-				if why := conform(s, p, vec(1).Unit(), sample.PixelKey(seed, i, int(k.kind))); why != "" {
+				if why := conform(s, p, vec(1).Unit(), sample.Key(seed).For(uint32(i)*8+uint32(k.kind))); why != "" {
 					t.Fatalf("seed %d, draw %d: %+v at %v: %s", seed, i, s, p, why)
 				}
 				l := New(s)
@@ -203,7 +203,7 @@ func TestAwkwardPlaces(t *testing.T) {
 				d, u, v = up, v3{X: 1}, v3{Z: 1}
 			}
 			for i, n := range []v3{d, d.Add(u).Unit(), u, v.Neg()} {
-				if why := conform(c.spec, c.p, n, sample.PixelKey(5, i, 0)); why != "" {
+				if why := conform(c.spec, c.p, n, sample.Key(5).For(uint32(i))); why != "" {
 					t.Errorf("normal %v: %s", n, why)
 				}
 			}
@@ -261,7 +261,7 @@ func TestUniformOverLamp(t *testing.T) {
 		l.Prepare(geom.Vec3{}, &q)
 		var quarters [4]int
 		uv := make([][2]float32, 4096)
-		sample.PixelKey(1, 2, 3).Points(0, uv)
+		sample.Key(123).Points(0, uv)
 		for _, x := range uv {
 			wi, _, _ := q.Sample(x[0], x[1])
 			i := 0

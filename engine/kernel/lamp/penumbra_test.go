@@ -15,7 +15,7 @@ func shadowed(s Spec, p geom.Vec3, height float32, samples int, blocked func(x, 
 	var q Prepared
 	l.Prepare(p, &q)
 	uv := make([][2]float32, samples)
-	sample.PixelKey(3, 1, 4).Points(0, uv)
+	sample.Key(314).Points(0, uv)
 	sum := 0.0
 	for _, c := range uv {
 		wi, _, w := q.Sample(c[0], c[1])

@@ -10,7 +10,7 @@ var (
 func BenchmarkPoints(b *testing.B) {
 	uv := make([][2]float32, 16)
 	for i := 0; b.Loop(); i++ {
-		PixelKey(1, i, 7).Points(0, uv)
+		pixelKey(1, i, 7).Points(0, uv)
 	}
 	b.ReportMetric(float64(b.Elapsed().Nanoseconds())/float64(b.N*len(uv)), "ns/point")
 	sinkUV = uv
@@ -18,7 +18,7 @@ func BenchmarkPoints(b *testing.B) {
 
 func BenchmarkWarp(b *testing.B) {
 	uv := make([][2]float32, 1024)
-	PixelKey(1, 2, 3).Points(0, uv)
+	pixelKey(1, 2, 3).Points(0, uv)
 	b.Run("disk", func(b *testing.B) {
 		for i := 0; b.Loop(); i++ {
 			x, y := Disk(uv[i&1023][0], uv[i&1023][1])

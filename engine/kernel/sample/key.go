@@ -3,14 +3,6 @@ package sample
 // Key names a stream of sample points.
 type Key uint32
 
-// PixelKey returns the key of a pixel's streams. It depends on nothing but its arguments.
-func PixelKey(seed uint32, x, y int) Key {
-	h := mix(seed + golden)
-	h = mix(h ^ uint32(x))
-	h = mix(h + golden ^ uint32(y))
-	return Key(h)
-}
-
 // For returns the key of an independent stream, for one purpose: the lens, or one light (see Name).
 func (k Key) For(purpose uint32) Key {
 	return Key(mix(uint32(k) ^ mix(purpose+golden)))

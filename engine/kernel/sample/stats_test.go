@@ -31,7 +31,7 @@ func TestUniform(t *testing.T) {
 	for _, i := range []uint32{0, 1, 2, 3, 7, 8, 100, 1023} {
 		square, fine := make([]int, 64), make([]int, 256)
 		for n := range 64 * 64 {
-			u, v := PixelKey(1, n%64, n/64).Point(i)
+			u, v := pixelKey(1, n%64, n/64).Point(i)
 			square[int(u*8)<<3|int(v*8)]++
 			fine[int(u*256)]++
 		}
@@ -50,36 +50,36 @@ func TestIndependent(t *testing.T) {
 	key, fill := Name("key"), Name("fill")
 	pairs := map[string]func(x, y int) (a, b float32){
 		"purposes": func(x, y int) (float32, float32) {
-			k := PixelKey(1, x, y)
+			k := pixelKey(1, x, y)
 			return k.For(key).Float(5), k.For(fill).Float(5)
 		},
 		"purposes, second coordinate": func(x, y int) (float32, float32) {
-			k := PixelKey(1, x, y)
+			k := pixelKey(1, x, y)
 			_, a := k.For(key).Point(2)
 			_, b := k.For(fill).Point(2)
 			return a, b
 		},
 		"pixel and purpose": func(x, y int) (float32, float32) {
-			k := PixelKey(1, x, y)
+			k := pixelKey(1, x, y)
 			return k.Float(3), k.For(key).Float(3)
 		},
 		"small purposes": func(x, y int) (float32, float32) {
-			k := PixelKey(1, x, y)
+			k := pixelKey(1, x, y)
 			return k.For(0).Float(3), k.For(1).Float(3)
 		},
 		"pixels beside": func(x, y int) (float32, float32) {
-			return PixelKey(1, x, y).Float(0), PixelKey(1, x+1, y).Float(0)
+			return pixelKey(1, x, y).Float(0), pixelKey(1, x+1, y).Float(0)
 		},
 		"pixels below": func(x, y int) (float32, float32) {
-			return PixelKey(1, x, y).Float(0), PixelKey(1, x, y+1).Float(0)
+			return pixelKey(1, x, y).Float(0), pixelKey(1, x, y+1).Float(0)
 		},
 		"pixels mirrored": func(x, y int) (float32, float32) {
-			return PixelKey(1, x, y+1000).Float(0), PixelKey(1, y+1000, x).Float(0)
+			return pixelKey(1, x, y+1000).Float(0), pixelKey(1, y+1000, x).Float(0)
 		},
 		"seeds": func(x, y int) (float32, float32) {
-			return PixelKey(1, x, y).Float(0), PixelKey(2, x, y).Float(0)
+			return pixelKey(1, x, y).Float(0), pixelKey(2, x, y).Float(0)
 		},
-		"coordinates": func(x, y int) (float32, float32) { return PixelKey(1, x, y).Point(9) },
+		"coordinates": func(x, y int) (float32, float32) { return pixelKey(1, x, y).Point(9) },
 	}
 	for name, pair := range pairs {
 		counts := make([]int, 64)
@@ -99,7 +99,7 @@ func TestPadding(t *testing.T) {
 	const n, trials = 64, 400
 	sum2 := 0.0
 	for s := range trials {
-		k := PixelKey(uint32(s), 1, 2)
+		k := pixelKey(uint32(s), 1, 2)
 		a, b := k.For(Name("lens")), k.For(Name("key"))
 		r := 0.0
 		for i := range uint32(n) {
@@ -133,7 +133,7 @@ func TestStratified(t *testing.T) {
 	for _, row := range jitter {
 		sum2 := 0.0
 		for s := range trials {
-			PixelKey(uint32(s), row.n, 5).Points(0, uv[:row.n])
+			pixelKey(uint32(s), row.n, 5).Points(0, uv[:row.n])
 			hits := 0
 			for _, p := range uv[:row.n] {
 				x, y := p[0]-0.5, p[1]-0.5

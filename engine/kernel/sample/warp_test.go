@@ -12,7 +12,7 @@ import (
 func TestWarpMoments(t *testing.T) {
 	const n = 4096
 	uv := make([][2]float32, n)
-	PixelKey(1, 2, 3).Points(0, uv)
+	pixelKey(1, 2, 3).Points(0, uv)
 	for _, c := range []struct {
 		name, source string
 		want, sigma  float64 // sigma of one sample
@@ -100,7 +100,7 @@ func TestWarpUniform(t *testing.T) {
 	} {
 		counts := make([]int, 64)
 		for n := range 64 * 64 {
-			k := PixelKey(9, n%64, n/64) // independent points: chi-square supposes them
+			k := pixelKey(9, n%64, n/64) // independent points: chi-square supposes them
 			u, v := k.Point(0)
 			a, b := of(u, v)
 			counts[min(int(a*8), 7)<<3|min(int(b*8), 7)]++
