@@ -4,15 +4,21 @@ import (
 	"math"
 
 	lua "github.com/yuin/gopher-lua"
+
+	"lampbook/engine/kernel/num"
 )
 
-// openMath gives the state the mathematical functions of Lua 5.1. Chance is not among them: random(name) is the scene's own.
+// openMath gives the state the mathematical functions of Lua 5.1, with the same bits on every machine: what a scene computes goes into its
+// frames' hashes. Chance is not among them: random(name) is the scene's own.
 func (s *sandbox) openMath() {
 	functions := map[string]lua.LGFunction{}
 	for name, f := range map[string]func(float64) float64{
-		"abs": math.Abs, "acos": math.Acos, "asin": math.Asin, "atan": math.Atan, "ceil": math.Ceil, "cos": math.Cos, "cosh": math.Cosh,
-		"exp": math.Exp, "floor": math.Floor, "log": math.Log, "log10": math.Log10, "sin": math.Sin, "sinh": math.Sinh,
-		"sqrt": math.Sqrt, "tan": math.Tan, "tanh": math.Tanh,
+		"abs": math.Abs, "acos": num.AcosWide, "asin": num.AsinWide, "ceil": math.Ceil, "cosh": num.CoshWide, "exp": num.ExpWide,
+		"floor": math.Floor, "log": num.LogWide, "log10": num.Log10Wide, "sinh": num.SinhWide, "sqrt": math.Sqrt,
+		"tan": num.TanWide, "tanh": num.TanhWide,
+		"atan": func(v float64) float64 { return num.Atan2Wide(v, 1) },
+		"cos":  func(v float64) float64 { _, c := num.SinCosWide(v); return c },
+		"sin":  func(v float64) float64 { s, _ := num.SinCosWide(v); return s },
 		"deg": func(v float64) float64 { return v * (180 / math.Pi) },
 		"rad": func(v float64) float64 { return v * (math.Pi / 180) },
 	} {
@@ -21,7 +27,7 @@ func (s *sandbox) openMath() {
 			return 1
 		}
 	}
-	for name, f := range map[string]func(a, b float64) float64{"atan2": math.Atan2, "fmod": math.Mod, "pow": math.Pow} {
+	for name, f := range map[string]func(a, b float64) float64{"atan2": num.Atan2Wide, "fmod": math.Mod, "pow": num.PowWide} {
 		functions[name] = func(l *lua.LState) int {
 			l.Push(lua.LNumber(f(s.number(l, "math."+name, 1), s.number(l, "math."+name, 2))))
 			return 1
@@ -81,7 +87,7 @@ func compute(operator string, a, b float64) float64 {
 	case "/":
 		return a / b
 	case "^":
-		return math.Pow(a, b)
+		return num.PowWide(a, b)
 	}
 	v := math.Mod(a, b)
 	if v != 0 && (v < 0) != (b < 0) {
