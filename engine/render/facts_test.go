@@ -197,6 +197,70 @@ func TestAreaLightSoftensShadows(t *testing.T) {
 	}
 }
 
+// TestShadowsSoftenWithDistance measures how broad the penumbra of an edge is at two heights of the edge.
+func TestShadowsSoftenWithDistance(t *testing.T) {
+	const pixels, across = 256, 2.0
+	for _, tt := range []struct {
+		height, want float64
+		source       string
+	}{
+		{1, 1, "reference PEN-WIDTH-2-3-1"},
+		{0.25, 2 * 0.25 / 2.75, "similar triangles: w·ho / (hL - ho), as in PEN-WIDTH"},
+		{0.02, 2 * 0.02 / 2.98, "similar triangles"},
+	} {
+		shot := func(with bool) []float32 {
+			var s studio
+			things := []model.Placement{s.thing(floor, matt(0.8))}
+			if with {
+				card := s.thing(model.Mesh{Kind: model.MeshPlane, Size: [3]float64{50, 0, 100}}, matt(0))
+				card.At, card.Hidden = [3]float64{-25, tt.height, 0}, true
+				things = append(things, card)
+			}
+			lamp := ceiling(3, model.Light{Shape: model.AreaRectangle, Width: 2, Height: 2})
+			set := model.Settings{Width: pixels, Height: 1, Samples: 1024, Filter: model.BoxFilter}
+			return s.shoot(t, ortho(fromTop, origin, zUp, across/pixels), set, s.lights(lamp), things...).Plane("G")
+		}
+		shaded, open := shot(true), shot(false)
+		first, last := -1, -1
+		for i := range shaded {
+			share := shaded[i] / open[i]
+			if first < 0 && share > 0.002 {
+				first = i
+			}
+			if share < 0.998 {
+				last = i
+			}
+		}
+		// One pixel at either end, and what the faint ends of the ramp hide from the thresholds.
+		got, pixel := float64(last-first+1)*across/pixels, across/pixels
+		if math.Abs(got-tt.want) > 2*pixel+0.03*tt.want {
+			t.Errorf("edge at %v m: the penumbra is %.4f m wide, want %.4f (%s)", tt.height, got, tt.want, tt.source)
+		}
+	}
+}
+
+// TestEqualTilesAreEqual renders two frames that differ in nothing but name and tags, in one cast and in two.
+func TestEqualTilesAreEqual(t *testing.T) {
+	var s studio
+	frames := batch(&s)
+	twin := s.plan.Frames[frames[0]]
+	twin.Name, twin.Tags = "twin", []model.Tag{{Key: "shelf", Value: model.Value{Text: "upper"}}}
+	s.plan.Frames = append(s.plan.Frames, twin)
+	other := len(s.plan.Frames) - 1
+	together := s.render(t, Options{}, frames[0], other)
+	apart := s.render(t, Options{Threads: 1}, other)[0]
+	if p := same(together[0].Display, together[1].Display); p != "" {
+		t.Errorf("plane %s differs between equal frames of one cast", p)
+	}
+	if p := same(together[0].Display, apart.Display); p != "" {
+		t.Errorf("plane %s differs between equal frames of two casts", p)
+	}
+	h := model.NewHasher(&s.plan)
+	if h.Frame(frames[0]) != h.Frame(other) {
+		t.Error("equal frames have different hashes")
+	}
+}
+
 // TestShadowsSpareAmbientAndEmission compares a floor inside and outside of a full shadow.
 func TestShadowsSpareAmbientAndEmission(t *testing.T) {
 	var s studio
