@@ -43,6 +43,13 @@ func (l *Library) Get(m model.Mesh) (*Mesh, error) {
 	return b.mesh, b.err
 }
 
+// Forget lets go of a mesh; the next Get builds it anew.
+func (l *Library) Forget(m model.Mesh) {
+	if key, ok := l.key(m); ok {
+		delete(l.built, key)
+	}
+}
+
 // key hashes a description. ok is false if it has no canonical encoding.
 func (l *Library) key(m model.Mesh) (key meshKey, ok bool) {
 	if m.Raw != nil {

@@ -17,6 +17,11 @@ type Mesh struct {
 	Materials []model.Material
 }
 
+// Bytes is the memory that the mesh's tables hold.
+func (m *Mesh) Bytes() int64 {
+	return int64(12*len(m.Positions) + 12*len(m.Normals) + 8*len(m.UVs) + 12*len(m.Triangles) + 2*len(m.Slots))
+}
+
 // Bounds returns the smallest box around the positions that triangles use.
 func (m *Mesh) Bounds() geom.Box {
 	b := geom.EmptyBox()

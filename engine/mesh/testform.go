@@ -109,7 +109,7 @@ func (p *pen) arc(radius, deg float64) {
 		p.heading = math.Mod(from+float64(turn*i)/steps+360, 360)
 		c, s := cosSinDeg(p.heading)
 		p.r, p.y = r0+float64(radius*s), y0-float64(radius*c)
-		p.along += float64(math.Abs(radius)*deg) / steps * (math.Pi / 180)
+		p.along += float64(float64(math.Abs(radius)*deg) / steps * (math.Pi / 180))
 		p.put()
 	}
 }

@@ -80,8 +80,10 @@ func BenchmarkSheet(b *testing.B) {
 			var s studio
 			frames := sheetPlan(&s, sheet.frames, sheet.vary)
 			e := s.engine(b)
-			if _, _, err := e.build(model.Mesh{Kind: model.MeshTestForm}); err != nil {
-				b.Fatal(err)
+			for id := range s.plan.Meshes {
+				if _, _, err := e.meshes.get(&s.plan, model.MeshID(id), 1); err != nil {
+					b.Fatal(err)
+				}
 			}
 			var whole, tile time.Duration
 			var rays Stats
@@ -123,7 +125,7 @@ type tape struct {
 // record casts frame i of a plan pixel by pixel and keeps its rays.
 func record(b *testing.B, e *Engine, plan *model.Plan, i int) (*cast, *tape) {
 	b.Helper()
-	c, err := compile(Cast{Plan: plan, Frames: []int{i}}, func(id model.MeshID) (*mesh.Mesh, *bvh.Tree, error) { return e.build(plan.Meshes[id]) })
+	c, err := compile(Cast{Plan: plan, Frames: []int{i}}, func(id model.MeshID) (*mesh.Mesh, *bvh.Tree, error) { return e.meshes.get(plan, id, 1) })
 	if err != nil {
 		b.Fatal(err)
 	}

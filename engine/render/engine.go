@@ -5,7 +5,6 @@ import (
 	"errors"
 	"fmt"
 	"runtime"
-	"sync"
 
 	"lampbook/engine/kernel/bvh"
 	"lampbook/engine/mesh"
@@ -15,27 +14,26 @@ import (
 
 // Engine renders casts and keeps the hierarchies of the meshes that it has built. Safe to share; casts may run at once.
 type Engine struct {
-	mu     sync.Mutex
-	source *mesh.Library
-	built  map[model.Hash]builtMesh
+	meshes store
 }
 
-// builtMesh is a mesh with its hierarchy, or why there is none.
-type builtMesh struct {
-	mesh *mesh.Mesh
-	tree *bvh.Tree
-	err  error
-}
-
-// NewEngine returns an engine that takes its meshes from the library.
+// NewEngine returns an engine that takes its meshes from the library. The library is the engine's from then on.
 func NewEngine(source *mesh.Library) *Engine {
-	return &Engine{source: source, built: map[model.Hash]builtMesh{}}
+	return &Engine{meshes: store{source: source, most: defaultStore, built: map[model.Hash]*builtMesh{}, keys: map[meshRef]model.Hash{}}}
 }
 
 // Options tune Render. The zero value uses every core.
 type Options struct {
 	Threads  int              // goroutines; 0 means one a core
 	Progress func(more Stats) // called now and then from many goroutines with the rays cast since its last call; nil: none
+}
+
+// threads is how many goroutines to use.
+func (o Options) threads() int {
+	if o.Threads > 0 {
+		return o.Threads
+	}
+	return runtime.GOMAXPROCS(0)
 }
 
 // Result is one frame's outcome.
@@ -66,7 +64,7 @@ func (e *Engine) Render(ctx context.Context, c Cast, o Options) ([]Result, error
 			return nil, fmt.Errorf("frame %q cannot be rendered: %s", c.Plan.Frames[i].Name, reason)
 		}
 	}
-	compiled, err := compile(c, func(id model.MeshID) (*mesh.Mesh, *bvh.Tree, error) { return e.build(c.Plan.Meshes[id]) })
+	compiled, err := compile(c, func(id model.MeshID) (*mesh.Mesh, *bvh.Tree, error) { return e.meshes.get(c.Plan, id, o.threads()) })
 	if err != nil {
 		for k := range results {
 			results[k].Err = err
@@ -93,32 +91,13 @@ func (e *Engine) Render(ctx context.Context, c Cast, o Options) ([]Result, error
 	return results, nil
 }
 
-// build returns the mesh with its hierarchy, made at first asking.
-func (e *Engine) build(m model.Mesh) (*mesh.Mesh, *bvh.Tree, error) {
-	e.mu.Lock()
-	defer e.mu.Unlock()
-	key := model.MeshHash(m)
-	b, ok := e.built[key]
-	if !ok {
-		b.mesh, b.err = e.source.Get(m)
-		if b.err == nil {
-			b.tree = bvh.Build(b.mesh.Positions, b.mesh.Triangles, bvh.BuildOptions{})
-		}
-		e.built[key] = b
-	}
-	return b.mesh, b.tree, b.err
-}
-
 // render casts every tile and returns a film a look.
 func (c *cast) render(ctx context.Context, o Options) ([]*film, Stats, error) {
 	films := make([]*film, len(c.looks))
 	for k := range films {
 		films[k] = newFilm(c.looks[k].settings)
 	}
-	threads := o.Threads
-	if threads <= 0 {
-		threads = runtime.GOMAXPROCS(0)
-	}
+	threads := o.threads()
 	tiles := tilesOf(c.settings.Width, c.settings.Height)
 	threads = min(threads, len(tiles))
 	workers := make([]worker, threads)

@@ -207,11 +207,11 @@ func ShowPass(linear *pixmap.Image, pass model.Pass, s model.Settings) (*pixmap.
 		case model.PassDepth:
 			value = tint.Grey(0.95)
 			if far > near {
-				value = tint.Grey(0.95 - 0.9*(in[0][i]-near)/(far-near))
+				value = tint.Grey(0.95 - float32(0.9*(in[0][i]-near))/(far-near))
 			}
 			value, alpha = layOver(value, alpha, s)
 		case model.PassNormal:
-			value, alpha = layOver(tint.RGB{R: 0.5 + value.R/2, G: 0.5 + value.G/2, B: 0.5 + value.B/2}, alpha, s)
+			value, alpha = layOver(value.Add(tint.Grey(1)).Scale(0.5), alpha, s)
 		case model.PassSamples:
 			value, alpha = tint.Grey(min(value.R/float32(s.Samples), 1)), 1
 		case model.PassNoise:
