@@ -7,6 +7,7 @@ import (
 	"slices"
 
 	"lampbook/engine/kernel/geom"
+	"lampbook/engine/kernel/num"
 	"lampbook/engine/model"
 )
 
@@ -81,10 +82,10 @@ func Fit(f FitSpec) (model.Camera, error) {
 	rightMost, leftMost, topMost, bottomMost, near := low, low, low, low, math.Inf(1)
 	for _, p := range pts {
 		x, y, z := right.Dot(p), upward.Dot(p), forward.Dot(p)
-		rightMost = max(rightMost, x-tanX*z)
-		leftMost = max(leftMost, -x-tanX*z)
-		topMost = max(topMost, y-tanY*z)
-		bottomMost = max(bottomMost, -y-tanY*z)
+		rightMost = max(rightMost, x-float64(tanX*z))
+		leftMost = max(leftMost, -x-float64(tanX*z))
+		topMost = max(topMost, y-float64(tanY*z))
+		bottomMost = max(bottomMost, -y-float64(tanY*z))
 		near = min(near, z)
 	}
 	ex, ey := (rightMost-leftMost)/2, (topMost-bottomMost)/2
@@ -98,7 +99,7 @@ func Fit(f FitSpec) (model.Camera, error) {
 		ez = near - radius
 	} else {
 		ez = min(-(rightMost+leftMost)/(2*tanX), -(topMost+bottomMost)/(2*tanY))
-		ez = min(ez, near-1e-3*radius) // a single point, or a flat thing edge on, still stands in front of the camera
+		ez = min(ez, near-float64(1e-3*radius)) // a single point, or a flat thing edge on, still stands in front of the camera
 	}
 	eye := right.Scale(ex).Add(upward.Scale(ey)).Add(forward.Scale(ez))
 	cam.Position = settledPoint(eye, radius)
@@ -124,7 +125,7 @@ func swept(t Thing) []geom.Vec3d {
 	type ring struct{ r, y float64 }
 	var rings []ring
 	for _, p := range Points(t) {
-		rings = append(rings, ring{math.Hypot(p.X-axis[0], p.Z-axis[2]), p.Y})
+		rings = append(rings, ring{geom.Vec3d{X: p.X - axis[0], Z: p.Z - axis[2]}.Len(), p.Y})
 	}
 	slices.SortFunc(rings, func(a, b ring) int {
 		switch {
@@ -142,7 +143,7 @@ func swept(t Thing) []geom.Vec3d {
 		}
 		for len(hull) > 1 {
 			a, b := hull[len(hull)-2], hull[len(hull)-1]
-			if (b.y-a.y)*(q.r-a.r)-(b.r-a.r)*(q.y-a.y) < 0 {
+			if float64((b.y-a.y)*(q.r-a.r))-float64((b.r-a.r)*(q.y-a.y)) < 0 {
 				break
 			}
 			hull = hull[:len(hull)-1]
@@ -152,8 +153,8 @@ func swept(t Thing) []geom.Vec3d {
 	var pts []geom.Vec3d
 	for _, h := range hull {
 		for i := range sweepSteps {
-			sin, cos := math.Sincos(2 * math.Pi * float64(i) / sweepSteps)
-			pts = append(pts, geom.Vec3d{X: axis[0] + h.r*cos, Y: h.y, Z: axis[2] + h.r*sin})
+			sin, cos := num.SinCosWide(2 * math.Pi * float64(i) / sweepSteps)
+			pts = append(pts, geom.Vec3d{X: axis[0] + float64(h.r*cos), Y: h.y, Z: axis[2] + float64(h.r*sin)})
 		}
 	}
 	return pts

@@ -7,6 +7,7 @@ import (
 
 	"lampbook/engine/kernel/geom"
 	"lampbook/engine/kernel/lamp"
+	"lampbook/engine/kernel/num"
 	"lampbook/engine/kernel/tint"
 	"lampbook/engine/model"
 )
@@ -60,11 +61,11 @@ func Meter(lights []model.Light, at, facing [3]float64) (stops float64, err erro
 	for _, l := range lights {
 		spec, ok := LampSpec(l)
 		if !ok {
-			level += l.Intensity * luminance(l.Color.Mul(l.Components.Ambient))
+			level += float64(l.Intensity * luminance(l.Color.Mul(l.Components.Ambient)))
 			continue
 		}
 		lp := lamp.New(spec)
-		level += l.Intensity / math.Pi * luminance(l.Color.Mul(l.Components.Diffuse)) * lp.Irradiance(vec(at), n)
+		level += float64(l.Intensity / math.Pi * luminance(l.Color.Mul(l.Components.Diffuse)) * lp.Irradiance(vec(at), n))
 		// A light's own ambient weight takes what a surface facing it would get.
 		if own := luminance(l.Color.Mul(l.Components.Ambient)); own > 0 {
 			toLight := n
@@ -73,7 +74,7 @@ func Meter(lights []model.Light, at, facing [3]float64) (stops float64, err erro
 			} else {
 				toLight = vec(l.Direction).Unit().Neg()
 			}
-			level += l.Intensity / math.Pi * own * lp.Irradiance(vec(at), toLight)
+			level += float64(l.Intensity / math.Pi * own * lp.Irradiance(vec(at), toLight))
 		}
 	}
 	if !(level > 0) {
@@ -82,11 +83,11 @@ func Meter(lights []model.Light, at, facing [3]float64) (stops float64, err erro
 	if math.IsInf(level, 0) {
 		return 0, fmt.Errorf("the light at %v is without bound", at)
 	}
-	return settled(-math.Log2(level)), nil
+	return settled(-num.LogWide(level) / math.Ln2), nil
 }
 
 func luminance(c tint.RGB) float64 {
-	return 0.2126*float64(c.R) + 0.7152*float64(c.G) + 0.0722*float64(c.B)
+	return float64(0.2126*float64(c.R)) + float64(0.7152*float64(c.G)) + float64(0.0722*float64(c.B))
 }
 
 // TurnLights returns the lights turned about the vertical through the origin, by degrees, counter-clockwise seen from above.

@@ -361,7 +361,9 @@ func finite32(values ...float32) bool {
 
 // parallel reports whether a and b span no plane, or one of them is zero.
 func parallel(a, b [3]float64) bool {
-	c := [3]float64{a[1]*b[2] - a[2]*b[1], a[2]*b[0] - a[0]*b[2], a[0]*b[1] - a[1]*b[0]}
-	dot := func(u, v [3]float64) float64 { return u[0]*v[0] + u[1]*v[1] + u[2]*v[2] }
+	c := [3]float64{
+		float64(a[1]*b[2]) - float64(a[2]*b[1]), float64(a[2]*b[0]) - float64(a[0]*b[2]), float64(a[0]*b[1]) - float64(a[1]*b[0]),
+	}
+	dot := func(u, v [3]float64) float64 { return float64(u[0]*v[0]) + float64(u[1]*v[1]) + float64(u[2]*v[2]) }
 	return !(dot(c, c) > 1e-18*dot(a, a)*dot(b, b))
 }

@@ -51,7 +51,7 @@ func (m *Image) Finite() bool {
 	for _, p := range m.Planes {
 		var s float32
 		for _, v := range p.Pix {
-			s += v * 0
+			s += float32(v * 0)
 		}
 		if s != 0 {
 			return false

@@ -359,7 +359,9 @@ func describePoint(p [3]float64) string {
 
 // parallel reports whether a and b span no plane. It is model's rule for axes, asked earlier, where the line is known.
 func parallel(a, b [3]float64) bool {
-	c := [3]float64{a[1]*b[2] - a[2]*b[1], a[2]*b[0] - a[0]*b[2], a[0]*b[1] - a[1]*b[0]}
-	dot := func(u, v [3]float64) float64 { return u[0]*v[0] + u[1]*v[1] + u[2]*v[2] }
+	c := [3]float64{
+		float64(a[1]*b[2]) - float64(a[2]*b[1]), float64(a[2]*b[0]) - float64(a[0]*b[2]), float64(a[0]*b[1]) - float64(a[1]*b[0]),
+	}
+	dot := func(u, v [3]float64) float64 { return float64(u[0]*v[0]) + float64(u[1]*v[1]) + float64(u[2]*v[2]) }
 	return !(dot(c, c) > 1e-18*dot(a, a)*dot(b, b))
 }

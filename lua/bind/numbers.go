@@ -1,11 +1,11 @@
 package bind
 
 import (
-	"math"
 	"strconv"
 
 	lua "github.com/yuin/gopher-lua"
 
+	"lampbook/engine/kernel/num"
 	"lampbook/engine/model"
 )
 
@@ -31,7 +31,7 @@ func steps(a *args) lua.LValue {
 	from, to, count := a.span(limit{})
 	list := a.l.CreateTable(count, 0)
 	for i := range count {
-		list.Append(lua.LNumber(rounded(from + (to-from)*share(i, count))))
+		list.Append(lua.LNumber(rounded(from + float64((to-from)*share(i, count)))))
 	}
 	return list
 }
@@ -44,7 +44,7 @@ func geometric(a *args) lua.LValue {
 	}
 	list := a.l.CreateTable(count, 0)
 	for i := range count {
-		list.Append(lua.LNumber(rounded(from * math.Pow(to/from, share(i, count)))))
+		list.Append(lua.LNumber(rounded(from * num.PowWide(to/from, share(i, count)))))
 	}
 	return list
 }

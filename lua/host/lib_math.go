@@ -19,8 +19,8 @@ func (s *sandbox) openMath() {
 		"atan": func(v float64) float64 { return num.Atan2Wide(v, 1) },
 		"cos":  func(v float64) float64 { _, c := num.SinCosWide(v); return c },
 		"sin":  func(v float64) float64 { s, _ := num.SinCosWide(v); return s },
-		"deg": func(v float64) float64 { return v * (180 / math.Pi) },
-		"rad": func(v float64) float64 { return v * (math.Pi / 180) },
+		"deg":  func(v float64) float64 { return v * (180 / math.Pi) },
+		"rad":  func(v float64) float64 { return v * (math.Pi / 180) },
 	} {
 		functions[name] = func(l *lua.LState) int {
 			l.Push(lua.LNumber(f(s.number(l, "math."+name, 1))))

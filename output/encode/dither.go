@@ -16,7 +16,7 @@ var ditherMatrix = sync.OnceValue(func() *[ditherSide * ditherSide]float32 {
 	rank := voidAndCluster()
 	m := new([n]float32)
 	for i, r := range rank {
-		m[i] = (float32(r)+0.5)/n - 0.5
+		m[i] = float32((float32(r)+0.5)/n) - 0.5
 	}
 	return m
 })

@@ -64,12 +64,12 @@ func Quantize8(img *pixmap.Image) (*image.NRGBA, error) {
 			i := y*img.Width + x
 			t := float64(thresholds[x%ditherSide]) + 0.5
 			px := out.Pix[4*i : 4*i+4 : 4*i+4]
-			px[0] = uint8(float64(unit(d.r[i]))*255 + t)
-			px[1] = uint8(float64(unit(d.g[i]))*255 + t)
-			px[2] = uint8(float64(unit(d.b[i]))*255 + t)
+			px[0] = uint8(float64(float64(unit(d.r[i]))*255) + t)
+			px[1] = uint8(float64(float64(unit(d.g[i]))*255) + t)
+			px[2] = uint8(float64(float64(unit(d.b[i]))*255) + t)
 			px[3] = 255
 			if d.a != nil {
-				px[3] = uint8(float64(unit(d.a[i]))*255 + 0.5)
+				px[3] = uint8(float64(float64(unit(d.a[i]))*255) + 0.5)
 			}
 		}
 	}
@@ -84,7 +84,7 @@ func quantize16(img *pixmap.Image) (*image.NRGBA64, error) {
 	}
 	out := image.NewNRGBA64(image.Rect(0, 0, img.Width, img.Height))
 	put := func(at []byte, v float32) {
-		binary.BigEndian.PutUint16(at, uint16(float64(unit(v))*65535+0.5))
+		binary.BigEndian.PutUint16(at, uint16(float64(float64(unit(v))*65535)+0.5))
 	}
 	for i := range d.r {
 		px := out.Pix[8*i : 8*i+8]

@@ -56,8 +56,7 @@ func (a Vec3) Wide() Vec3d { return Vec3d{float64(a.X), float64(a.Y), float64(a.
 
 // Finite reports whether no component is NaN or infinite.
 func (a Vec3) Finite() bool {
-	s := a.X*0 + a.Y*0 + a.Z*0
-	return s == 0
+	return float32(a.X*0)+float32(a.Y*0)+float32(a.Z*0) == 0
 }
 
 // Ray is the set of points Org + t·Dir for t in (TMin, TMax). Dir need not be unit; t counts in lengths of Dir.
@@ -94,7 +93,8 @@ func (b Box) Union(c Box) Box { return b.Extend(c.Min).Extend(c.Max) }
 
 // Centre returns the middle of the box.
 func (b Box) Centre() Vec3 {
-	return Vec3{b.Min.X + (b.Max.X-b.Min.X)/2, b.Min.Y + (b.Max.Y-b.Min.Y)/2, b.Min.Z + (b.Max.Z-b.Min.Z)/2}
+	half := b.Max.Sub(b.Min).Scale(0.5)
+	return b.Min.Add(half)
 }
 
 // Size returns the lengths of the box's edges.

@@ -91,11 +91,11 @@ func ToLab(c RGB) Lab {
 		if t > labKnee {
 			return math.Cbrt(t)
 		}
-		return (24389.0/27*t + 16) / 116
+		return (float64(24389.0/27*t) + 16) / 116
 	}
 	t := ToXYZ(c)
 	fx, fy, fz := f(t.X/white.X), f(t.Y), f(t.Z/white.Z)
-	return Lab{L: 116*fy - 16, A: 500 * (fx - fy), B: 200 * (fy - fz)}
+	return Lab{L: float64(116*fy) - 16, A: 500 * (fx - fy), B: 200 * (fy - fz)}
 }
 
 // FromLab returns the linear colour of L*, a*, b* under D65; components lie outside [0, 1] for what Rec. 709 cannot show.
