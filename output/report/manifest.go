@@ -129,16 +129,13 @@ func settingsOf(s *model.Settings) *settingsForm {
 	}
 	f := &settingsForm{
 		Size: [2]int{s.Width, s.Height}, Samples: s.Samples, Noise: s.Noise, LightSamples: s.LightSamples, Seed: s.Seed, Filter: filterWord(s.Filter),
-		Exposure: s.Exposure, Tone: toneWord(s.Tone), Passes: []string{}, Formats: []string{},
+		Exposure: Stops(s.Exposure), Tone: toneWord(s.Tone), Passes: passNames(s.Passes), Formats: []string{},
 	}
 	if s.Tone == model.ToneReinhard {
 		f.White = &s.White
 	}
 	if !s.Background.Transparent {
 		f.Background = &[3]float32{s.Background.Color.R, s.Background.Color.G, s.Background.Color.B}
-	}
-	for _, p := range s.Passes {
-		f.Passes = append(f.Passes, passWord(p))
 	}
 	for _, x := range s.Formats {
 		f.Formats = append(f.Formats, formatWord(x))

@@ -14,7 +14,7 @@ import (
 // columns of frames.csv that stand before and after the tags.
 var (
 	columnsBefore = []string{"name", "state"}
-	columnsAfter  = []string{"reason", "hash", "width", "height", "samples", "noise", "light_samples", "seed", "filter", "exposure", "tone", "samples_taken", "noise_left", "camera_rays", "shadow_rays", "files"}
+	columnsAfter  = []string{"reason", "hash", "width", "height", "samples", "noise", "light_samples", "seed", "filter", "exposure", "tone", "white", "background", "passes", "samples_taken", "noise_left", "camera_rays", "shadow_rays", "files"}
 )
 
 // WriteFrames writes frames.csv: a row a frame, a column a tag (in first-seen order; empty where a frame lacks it), after RFC 4180, in
@@ -77,14 +77,19 @@ func writeRow(w *bufio.Writer, cells []string) {
 	w.WriteString("\r\n")
 }
 
-// settingCells are the cells from width to tone; empty where the frame has no settings, because it failed in the scene.
+// settingCells are the cells from width to passes; empty where the frame has no settings, because it failed in the scene.
 func settingCells(s *model.Settings) []string {
 	if s.Width == 0 {
-		return make([]string, 9)
+		return make([]string, 12)
+	}
+	white := ""
+	if s.Tone == model.ToneReinhard {
+		white = shortest(s.White)
 	}
 	return []string{
 		strconv.Itoa(s.Width), strconv.Itoa(s.Height), strconv.Itoa(s.Samples), measured(s.Noise), strconv.Itoa(s.LightSamples), strconv.FormatUint(uint64(s.Seed), 10),
-		filterWord(s.Filter), strconv.FormatFloat(s.Exposure, 'g', -1, 64), toneWord(s.Tone),
+		filterWord(s.Filter), shortest(Stops(s.Exposure)), toneWord(s.Tone),
+		white, backgroundText(s.Background), strings.Join(passNames(s.Passes), " "),
 	}
 }
 

@@ -16,8 +16,8 @@ type pictureFile struct {
 	pass   string // the name of the pass that it shows; "" for the picture
 }
 
-// filesOf lists the files of a frame: the formats that it asks for, and what its sheets show, for sheets are laid from the
-// files: a PNG besides, and one of each of its passes.
+// filesOf lists the files of a frame: the formats that it asks for, with a PNG of each of its passes where PNG is among them, and what
+// its sheets show, for sheets are laid from the files.
 func filesOf(f *model.Frame, on showing) []pictureFile {
 	formats := f.Settings.Formats
 	if on.shown && !slices.ContainsFunc(formats, isPNG) {
@@ -27,10 +27,10 @@ func filesOf(f *model.Frame, on showing) []pictureFile {
 	for _, format := range formats {
 		files = append(files, pictureFile{name: path.Join(framesFolder, f.Name+fileEnding(format)), format: format})
 	}
-	if on.passes {
+	if i := slices.IndexFunc(formats, isPNG); i >= 0 && (on.passes || slices.ContainsFunc(f.Settings.Formats, isPNG)) {
 		for _, pass := range f.Settings.Passes {
 			name := path.Join(framesFolder, f.Name+"."+pass.String()+".png")
-			files = append(files, pictureFile{name: name, format: model.FormatPNG, pass: pass.String()})
+			files = append(files, pictureFile{name: name, format: formats[i], pass: pass.String()})
 		}
 	}
 	return files

@@ -3,6 +3,8 @@ package main
 import (
 	"fmt"
 	"io"
+	"path"
+	"slices"
 	"strings"
 
 	"lampbook/engine/model"
@@ -16,7 +18,8 @@ import (
 // pictures writes a run's finished frames. Its take may be called from several goroutines at once, each with a frame of its own.
 type pictures struct {
 	folder *runFolder
-	plan   *model.Plan
+	scene  string      // its file, as the plan names it
+	plan   *model.Plan // free of the path under which the scene was named, so that the files are the same whatever it was
 	hasher *model.Hasher
 	on     []showing // by frame
 	taken  []outcome // by frame
@@ -31,10 +34,12 @@ type outcome struct {
 	rays    render.Stats
 	samples float64 // that a pixel took, in the mean
 	noise   float64 // L*, as estimated; 0 where it was not asked for
+	blank   bool    // the camera sees nothing
 }
 
 func newPictures(folder *runFolder, p *model.Plan) *pictures {
-	w := &pictures{folder: folder, plan: p, hasher: model.NewHasher(p), on: onSheets(p), taken: make([]outcome, len(p.Frames))}
+	scene, p := p.Scene, pathless(p)
+	w := &pictures{folder: folder, scene: scene, plan: p, hasher: model.NewHasher(p), on: onSheets(p), taken: make([]outcome, len(p.Frames))}
 	for i := range w.taken {
 		w.taken[i].state = report.Waiting
 	}
@@ -50,8 +55,13 @@ func (w *pictures) take(f run.Finished) error {
 		return nil
 	}
 	frame := &w.plan.Frames[f.Frame]
-	options := made(w.plan, w.hasher, f.Frame)
+	o.blank = blank(f.Linear)
+	about := made(w.plan, w.hasher, f.Frame)
 	for _, file := range w.files(f.Frame) {
+		options := about
+		if file.pass != "" {
+			options.Text = append(slices.Clone(about.Text), encode.KeyValue{Key: "pass", Value: file.pass})
+		}
 		err := encode.WriteFile(w.folder.path(file.name), func(to io.Writer) error {
 			return encodePicture(to, file, frame.Settings, f.Linear, f.Display, options)
 		})
@@ -68,8 +78,35 @@ func (w *pictures) take(f run.Finished) error {
 // files lists the files of a frame.
 func (w *pictures) files(frame int) []pictureFile { return filesOf(&w.plan.Frames[frame], w.on[frame]) }
 
+// blank reports whether a picture shows nothing but its ground.
+func blank(linear *pixmap.Image) bool {
+	cover := linear.Plane("A")
+	return cover != nil && !slices.ContainsFunc(cover, func(a float32) bool { return a > 0 })
+}
+
+// blankFrames words which frames show nothing, as remarks about where the scene registers them.
+func (w *pictures) blankFrames(p *model.Plan) []model.Warning {
+	var out []model.Warning
+	names := map[model.Pos][]string{}
+	for i, o := range w.taken {
+		if pos := p.Frames[i].Pos; o.blank {
+			if names[pos] == nil {
+				out = append(out, model.Warning{Pos: pos})
+			}
+			names[pos] = append(names[pos], p.Frames[i].Name)
+		}
+	}
+	for i := range out {
+		out[i].Text = framesText(names[out[i].Pos]) + ": the camera sees nothing: look at its position, its target and where the things stand"
+	}
+	return out
+}
+
 // encodePicture writes one file of a frame.
 func encodePicture(to io.Writer, file pictureFile, s model.Settings, linear, display *pixmap.Image, o encode.Options) error {
+	if file.format == model.FormatPNG16 || file.format == model.FormatEXRHalf {
+		o.Bits = 16
+	}
 	if file.pass != "" {
 		for _, pass := range s.Passes {
 			if pass.String() == file.pass {
@@ -81,16 +118,10 @@ func encodePicture(to io.Writer, file pictureFile, s model.Settings, linear, dis
 			}
 		}
 	}
-	switch file.format {
-	case model.FormatPNG16:
-		o.Bits = 16
-	case model.FormatEXRHalf:
-		o.Bits = 16
-		return encode.EXR(to, linear, o)
-	case model.FormatEXR:
-		return encode.EXR(to, linear, o)
+	if isPNG(file.format) {
+		return encode.PNG(to, display, o)
 	}
-	return encode.PNG(to, display, o)
+	return encode.EXR(to, linear, o)
 }
 
 // software is what pictures and sheets say made them.
@@ -99,24 +130,50 @@ var software = fmt.Sprintf("lampbook, picture version %d", model.PictureVersion)
 // made says in a picture's own metadata what made it.
 func made(p *model.Plan, h *model.Hasher, i int) encode.Options {
 	f := &p.Frames[i]
-	var tags, params []string
+	var tags []string
 	for _, t := range f.Tags {
 		tags = append(tags, t.Key+"="+t.Value.String())
 	}
-	for _, q := range p.Params {
-		params = append(params, q.Name+"="+q.Value)
-	}
-	s := f.Settings
 	return encode.Options{
 		Text: []encode.KeyValue{
 			{Key: "Software", Value: software},
 			{Key: "scene", Value: p.Scene},
-			{Key: "parameters", Value: strings.Join(params, "\n")},
+			{Key: "parameters", Value: paramLines(p)},
 			{Key: "frame", Value: f.Name},
 			{Key: "tags", Value: strings.Join(tags, "\n")},
 			{Key: "frameHash", Value: h.Frame(i).String()},
-			{Key: "settings", Value: fmt.Sprintf("size=%dx%d\nsamples=%d\nnoise=%v\nlight_samples=%d\nseed=%d", s.Width, s.Height, s.Samples, s.Noise, s.LightSamples, s.Seed)},
+			{Key: "settings", Value: strings.Join(report.SettingLines(f.Settings), "\n")},
 		},
-		Numbers: []encode.KeyNumber{{Key: "exposure", Value: float32(s.Exposure)}},
+		Numbers: []encode.KeyNumber{{Key: "exposure", Value: float32(report.Stops(f.Settings.Exposure))}},
 	}
+}
+
+// paramLines lists the plan's parameters with their values, one a line.
+func paramLines(p *model.Plan) string {
+	var lines []string
+	for _, q := range p.Params {
+		lines = append(lines, q.Name+"="+q.Value)
+	}
+	return strings.Join(lines, "\n")
+}
+
+// pathless is a plan without the path under which its scene was named: only the file's name is left, also at the head of what made
+// frames fail. Pictures, sheets and hashes are made from it.
+func pathless(p *model.Plan) *model.Plan {
+	out := *p
+	out.Scene = path.Base(p.Scene)
+	out.Frames = slices.Clone(p.Frames)
+	for i := range out.Frames {
+		out.Frames[i].Failure = shortened(p.Scene, p.Frames[i].Failure)
+	}
+	return &out
+}
+
+// shortened takes the path of the scene's folder out of a text.
+func shortened(scene, text string) string {
+	folder := path.Dir(scene)
+	if folder == "." || folder == "/" {
+		return text
+	}
+	return strings.ReplaceAll(text, folder+"/", "")
 }

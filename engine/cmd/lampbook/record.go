@@ -24,13 +24,13 @@ func writeRecord(j *job, w *pictures, sheets []report.SheetRecord, r *request, s
 	p := j.plan
 	record := report.Run{
 		Engine: version(), Scene: p.Scene, PlanHash: w.hasher.Plan().String(), Stamp: r.stamp,
-		Params: p.Params, Warnings: p.Warnings, Sheets: sheets,
+		Params: p.Params, Warnings: slices.Concat(p.Warnings, w.blankFrames(p)), Sheets: sheets,
 		Times: report.Times{Started: start.UTC().Format(time.RFC3339), Wall: time.Since(start).Seconds(), CPU: processorSeconds()},
 	}
 	for i, o := range w.taken {
 		f := &p.Frames[i]
 		record.Frames = append(record.Frames, report.FrameRecord{
-			Name: f.Name, Tags: f.Tags, Hash: w.hasher.Frame(i).String(), State: o.state, Reason: o.failure, Files: o.files, Settings: f.Settings,
+			Name: f.Name, Tags: f.Tags, Hash: w.hasher.Frame(i).String(), State: o.state, Reason: shortened(w.scene, o.failure), Files: o.files, Settings: f.Settings,
 			CameraRays: o.rays.CameraRays, ShadowRays: o.rays.ShadowRays, Samples: o.samples, Noise: o.noise, Seconds: o.seconds,
 		})
 	}

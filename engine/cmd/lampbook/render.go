@@ -64,7 +64,7 @@ func renderScene(cmd *cobra.Command, r *request) error {
 	for _, line := range faultyFrames(j.plan, func(i int) string { return w.taken[i].failure }) {
 		v.fault(line)
 	}
-	sheets, err := laySheets(j.plan, w, r.stamp, v)
+	sheets, err := laySheets(w, r, v)
 	err = errors.Join(err, writeRecord(j, w, sheets, r, start))
 	tellLeftOver(v, folder, earlier, j, w)
 	status := statusDone

@@ -9,6 +9,8 @@ import (
 	"os"
 	"path"
 	"slices"
+	"strconv"
+	"strings"
 
 	"lampbook/engine/model"
 	"lampbook/output/encode"
@@ -39,19 +41,23 @@ func sheetPages(p *model.Plan) ([]string, error) {
 
 // laySheets lays every sheet of the plan from the pictures on disk and returns what became of each. A sheet that cannot be laid
 // does not keep the others from it.
-func laySheets(p *model.Plan, w *pictures, stamp string, v *view) ([]report.SheetRecord, error) {
+func laySheets(w *pictures, r *request, v *view) ([]report.SheetRecord, error) {
+	p := w.plan
 	planHash := w.hasher.Plan()
 	var records []report.SheetRecord
 	var faults error
 	for _, s := range p.Sheets {
 		record := report.SheetRecord{Name: s.Name}
-		o := sheet.Options{Foot: sheet.Foot{PlanHash: planHash.Short(), Stamp: stamp}}
+		o := sheet.Options{Foot: sheet.Foot{PlanHash: planHash.Short(), Stamp: r.stamp, Lines: r.footLines(p)}}
 		err := sheet.Lay(p, s, w.tile, o, func(page sheet.Page) error {
 			name := path.Join(sheetsFolder, page.Name+".png")
 			about := encode.Options{Text: []encode.KeyValue{
 				{Key: "Software", Value: software},
 				{Key: "scene", Value: p.Scene},
+				{Key: "parameters", Value: paramLines(p)},
 				{Key: "sheet", Value: s.Name},
+				{Key: "only", Value: assignmentLines(r.only)},
+				{Key: "draft", Value: strconv.FormatBool(r.draft)},
 				{Key: "planHash", Value: planHash.String()},
 			}}
 			err := encode.WriteFile(w.folder.path(name), func(to io.Writer) error { return encode.PNGImage(to, page.Image, about) })
@@ -71,6 +77,52 @@ func laySheets(p *model.Plan, w *pictures, stamp string, v *view) ([]report.Shee
 	return records, faults
 }
 
+// footLines says at a sheet's foot how the command line changed what the scene says: what was set, that it is a draft, what was left out.
+func (r *request) footLines(p *model.Plan) []string {
+	var lines, set []string
+	for _, q := range p.Params {
+		if q.Set {
+			set = append(set, q.Name+" = "+cut(q.Value))
+		}
+	}
+	if len(set) > 0 {
+		lines = append(lines, "set "+strings.Join(set, ", "))
+	}
+	if r.draft {
+		lines = append(lines, "draft")
+	}
+	if len(r.only) > 0 {
+		var only []string
+		for i, a := range r.only {
+			name := a.name + " "
+			if i > 0 && r.only[i-1].name == a.name {
+				name = ""
+			}
+			only = append(only, name+cut(a.value))
+		}
+		lines = append(lines, "only "+strings.Join(only, ", "))
+	}
+	return lines
+}
+
+// cut keeps a value to what a line can bear.
+func cut(text string) string {
+	const most = 60
+	if runes := []rune(text); len(runes) > most {
+		return string(runes[:most-1]) + "…"
+	}
+	return text
+}
+
+// assignmentLines lists assignments as they were given, one a line.
+func assignmentLines(list []assignment) string {
+	var lines []string
+	for _, a := range list {
+		lines = append(lines, a.name+"="+a.value)
+	}
+	return strings.Join(lines, "\n")
+}
+
 // sheetLine is the JSON line of a page of a sheet.
 type sheetLine struct {
 	Event string `json:"event"`
@@ -83,9 +135,9 @@ func (w *pictures) tile(frame int, pass string) (sheet.Tile, error) {
 	o := w.taken[frame]
 	switch o.state {
 	case report.Failed:
-		return sheet.Tile{Failure: o.failure}, nil
+		return sheet.Tile{Failure: shortened(w.scene, o.failure)}, nil
 	case report.Waiting:
-		return sheet.Tile{Failure: "not rendered: the run was stopped before"}, nil
+		return sheet.Tile{Failure: "not rendered: the run was stopped"}, nil
 	}
 	for _, file := range w.files(frame) {
 		if file.pass == pass && isPNG(file.format) {
