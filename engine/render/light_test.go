@@ -72,6 +72,16 @@ func TestTextbookSum(t *testing.T) {
 	}
 }
 
+// TestCardLuminance renders an 18 % card under 1000 lx.
+func TestCardLuminance(t *testing.T) {
+	var s studio
+	sun := model.Light{Kind: model.LightDirectional, Intensity: 1000, Direction: [3]float64{0, -1, 0}}
+	img := s.shoot(t, ortho(fromTop, origin, zUp, 1), square(1, 1), s.lights(sun), s.thing(floor, matt(0.18)))
+	if got, want := at(img, 0, 0)[1], 57.29577951308232; off(got, want) > 1e-5 {
+		t.Errorf("the card has %v nit, want %v (reference UNIT-LAMBERT-REFL: L = ρE/π)", got, want)
+	}
+}
+
 // TestLambertSphere compares a ball's mean brightness with the closed form of a Lambert sphere's phases.
 func TestLambertSphere(t *testing.T) {
 	tests := []struct {
@@ -79,7 +89,7 @@ func TestLambertSphere(t *testing.T) {
 		want     float64
 		source   string
 	}{
-		{0, 0.6666666666666666, "reference IMG-LAMBERT-SPHERE-FULL: 2/3"},
+		{0, 0.6666666666666666, "reference IMG-LAMBERT-SPHERE-FULL and IMG-LAMBERT-PHASE-0: 2/3"},
 		{90, 0.2122065907891938, "reference IMG-LAMBERT-PHASE-90"},
 		{135, 0.032201589161759754, "reference IMG-LAMBERT-PHASE-135"},
 	}

@@ -27,6 +27,15 @@ func TestTextbookSum(t *testing.T) {
 	if nh := HalfCosine(n, wi, wo); math.Abs(float64(nh)-0.9579818178817235) > 1e-6 {
 		t.Errorf("N·H = %v, want 0.95798 (reference BP4-POINT)", nh)
 	}
+	// Reference BP4-SPOT: a lamp straight above, its attenuation 0.71942 and spot factor 0.96098 given with the row (its cone is not ours).
+	d, s = m.Reflect(n, geom.Vec3{Z: 1}, wo, tint.Grey(float32(math.Pi*0.7194244604316546*0.9609803444828173)))
+	sum = d.Add(s)
+	want = [3]float64{0.8711426665920167 - 0.09, 0.6137368368475237 - 0.04, 0.47546628368452837 - 0.04}
+	for k, got := range []float32{sum.R, sum.G, sum.B} {
+		if math.Abs(float64(got)-want[k]) > 1e-6 {
+			t.Errorf("component %d: %v, want %v (reference BP4-SPOT)", k, got, want[k])
+		}
+	}
 	if d, s := m.Reflect(n, wi.Neg(), wo, tint.Grey(1)); !d.Black() || !s.Black() {
 		t.Errorf("light from behind gives %v and %v", d, s)
 	}
