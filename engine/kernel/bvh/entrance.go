@@ -5,8 +5,8 @@ import "math/bits"
 // mostOpened bounds the work for one bundle.
 const mostOpened = 24
 
-// entrance fills n with up to eight nodes and leaves of t that together hold all that s crosses. It is false if there is nothing.
-func (t *wideTree) entrance(n *wideNode, s *shaft) bool {
+// entrance fills n with up to eight nodes and leaves of t that together hold all that s crosses, and returns their number.
+func (t *wideTree) entrance(n *wideNode, s *shaft) int {
 	var from [8]struct{ node, place uint32 }
 	var child [8]uint32
 	count := 0
@@ -59,5 +59,5 @@ func (t *wideTree) entrance(n *wideNode, s *shaft) bool {
 			n.planes[2*r][i], n.planes[2*r+1][i] = inf, -inf
 		}
 	}
-	return count > 0
+	return count
 }

@@ -27,6 +27,7 @@ type wideScratch struct {
 	lanes    lanes
 	entrance wideNode
 	shaft    shaft
+	hand     handful
 }
 
 // readied is how many rays are made ready together; they should stay in the first-level cache.
@@ -65,29 +66,13 @@ func (t *wideTree) head() wideHead {
 	}
 }
 
-// enter returns the node from which rays start, nil if none of them hits anything.
-func (t *wideTree) enter(w *Walker, rays []geom.Ray) unsafe.Pointer {
-	if len(rays) >= leastBundle && useBundles {
-		switch w.wide.shaft.enclose(rays, t.bounds, 1) {
-		case outside:
-			return nil
-		case enclosed:
-			if !t.entrance(&w.wide.entrance, &w.wide.shaft) {
-				return nil
-			}
-			return unsafe.Pointer(&w.wide.entrance)
-		}
-	}
-	return unsafe.Pointer(&t.nodes[0])
-}
-
 // useBundles says that rays which run together start together. Tests switch it off to compare.
 var useBundles = true
 
 // closest improves hits with what rays meet in t.
 func (t *wideTree) closest(w *Walker, rays []geom.Ray, hits []Hit, placement uint32) {
-	entry := t.enter(w, rays)
-	if entry == nil {
+	entry, inHand := t.start(w, rays)
+	if entry == nil && inHand == 0 {
 		return
 	}
 	x := &w.wide
@@ -96,6 +81,12 @@ func (t *wideTree) closest(w *Walker, rays []geom.Ray, hits []Hit, placement uin
 	for i := 0; i < len(rays); i += readied {
 		n := min(readied, len(rays)-i)
 		prepareWide(&h, &rays[i], n, &x.rays[0])
+		if inHand > 0 {
+			if x.hand.closest(inHand, x.rays[:n], hits[i:i+n], placement, &x.lanes) {
+				continue
+			}
+			entry = h.nodes
+		}
 		closestWide(entry, &x.rays[0], n, &hits[i], placement, &x.lanes)
 	}
 	x.lanes.nodes, x.lanes.blocks = nil, nil
@@ -103,8 +94,8 @@ func (t *wideTree) closest(w *Walker, rays []geom.Ray, hits []Hit, placement uin
 
 // occluded sets blocked for rays that meet anything in t.
 func (t *wideTree) occluded(w *Walker, rays []geom.Ray, blocked []bool) {
-	entry := t.enter(w, rays)
-	if entry == nil {
+	entry, inHand := t.start(w, rays)
+	if entry == nil && inHand == 0 {
 		return
 	}
 	x := &w.wide
@@ -113,6 +104,12 @@ func (t *wideTree) occluded(w *Walker, rays []geom.Ray, blocked []bool) {
 	for i := 0; i < len(rays); i += readied {
 		n := min(readied, len(rays)-i)
 		prepareWide(&h, &rays[i], n, &x.rays[0])
+		if inHand > 0 {
+			if x.hand.occluded(inHand, x.rays[:n], blocked[i:i+n], &x.lanes) {
+				continue
+			}
+			entry = h.nodes
+		}
 		occludedWide(entry, &x.rays[0], n, &blocked[i], &x.lanes)
 	}
 	x.lanes.nodes, x.lanes.blocks = nil, nil

@@ -11,6 +11,7 @@
 // the portable code's, products of two of them agree, and the factors -1/direction and -1/Dir[KZ] undo the rest.
 
 #include "textflag.h"
+#include "lanes_amd64.h"
 
 // wideRay
 #define R_NEAR 0
@@ -25,30 +26,6 @@
 #define R_TMIN 96
 #define R_TMAX 100
 #define R_SIZE 128
-
-// lanes
-#define L_ENTER 0
-#define L_T 32
-#define L_US 64
-#define L_VS 96
-#define L_AX 128
-#define L_AY 160
-#define L_BX 192
-#define L_BY 224
-#define L_CX 256
-#define L_CY 288
-#define L_EU 320
-#define L_EV 352
-#define L_EW 384
-#define L_NODES 416
-#define L_BLOCKS 424
-#define L_RUN 432
-#define L_BEST 440
-#define L_TIE 444
-#define L_U 448
-#define L_V 452
-#define L_FOUND 456
-#define L_STACK 512
 
 #define H_LO 0
 #define H_HI 16
@@ -310,18 +287,6 @@ skip:
 	VMOVUPS Y14, L_EU(R8) \
 	VMOVUPS Y15, L_EV(R8) \
 	VMOVUPS Y0, L_EW(R8)
-
-// One edge function of lane DX in float64: p·q - r·s to e.
-#define EXACT(p, q, r, s, e) \
-	VCVTSS2SD p(R8)(DX*4), X8, X8 \
-	VCVTSS2SD q(R8)(DX*4), X9, X9 \
-	VCVTSS2SD r(R8)(DX*4), X10, X10 \
-	VCVTSS2SD s(R8)(DX*4), X11, X11 \
-	VMULSD X9, X8, X8 \
-	VMULSD X11, X10, X10 \
-	VSUBSD X10, X8, X8 \
-	VCVTSD2SS X8, X8, X8 \
-	VMOVSS X8, e(R8)(DX*4)
 
 // One axis of the triangles' own boxes: Y1 = where they are entered so far, Y2 = where they are left. row is 0, 32 or 64, at 0, 4 or 8.
 #define OWNBOX(row, at) \
