@@ -47,7 +47,7 @@ func Fit(f FitSpec) (model.Camera, error) {
 		return model.Camera{}, errors.New("direction must not be zero")
 	}
 	if right.Len() < 0.5 || forward.Cross(up).Len() < 1e-9*up.Len() {
-		return model.Camera{}, fmt.Errorf("direction %v runs along up %v: give another up", f.Direction, arr(up))
+		return model.Camera{}, fmt.Errorf("direction %s runs along up %s: give another up", shown(f.Direction), shown(arr(up)))
 	}
 	upward := right.Cross(forward)
 
@@ -107,6 +107,9 @@ func Fit(f FitSpec) (model.Camera, error) {
 	cam.Height = settled(cam.Height)
 	return cam, nil
 }
+
+// shown is a point as scenes write it.
+func shown(p [3]float64) string { return fmt.Sprintf("{%v, %v, %v}", p[0], p[1], p[2]) }
 
 // boundsOf returns the centre and half diagonal of the points' box.
 func boundsOf(pts []geom.Vec3d) (centre geom.Vec3d, radius float64) {

@@ -97,7 +97,11 @@ func (a *args) checkKey(k lua.LValue) {
 			}
 		}
 		if a.entry.list != "" && len(a.entry.names) == 0 {
-			a.failf("takes a list of %s, got the key %q", a.entry.list, string(k))
+			instead := ""
+			if a.entry.keyed != nil {
+				instead = a.entry.keyed(string(k), a.table.RawGet(k))
+			}
+			a.failf("takes a list of %s, got the key %q%s", a.entry.list, string(k), instead)
 		}
 		a.failf("unknown key %q%s", string(k), Hint(string(k), a.entry.names))
 	case lua.LNumber:
@@ -112,6 +116,9 @@ func (a *args) checkKey(k lua.LValue) {
 // usage is the shape of a call, for messages.
 func (a *args) usage() string {
 	c := a.entry
+	if c.usage != "" {
+		return c.usage
+	}
 	var parts []string
 	for _, p := range c.params {
 		parts = append(parts, p.Name)

@@ -130,7 +130,7 @@ func TestNearest(t *testing.T) {
 	known := []string{"diffuse", "specular", "ambient", "emission", "shininess"}
 	for _, c := range []struct{ name, want string }{
 		{"shinyness", "shininess"}, {"Diffuse", "diffuse"}, {"specualr", "specular"}, {"ambeint", "ambient"},
-		{"roughness", ""}, {"x", ""}, {"", ""},
+		{"roughness", ""}, {"x", ""}, {"", ""}, {"diffs", ""}, {"ambnt", ""},
 	} {
 		if got := Nearest(c.name, known); got != c.want {
 			t.Errorf("Nearest(%q) = %q, want %q", c.name, got, c.want)

@@ -117,7 +117,7 @@ func (a *args) readView(v *view) {
 		a.failf("height is for projection = \"orthographic\"; a perspective camera takes focal or fov")
 	}
 	if v.Position == v.Target {
-		a.failf("position and target must be two points, both are %s", describePoint(v.Target))
+		a.failf("position and target must be two different points, both are %s", describePoint(v.Target))
 	}
 	axis := [3]float64{v.Target[0] - v.Position[0], v.Target[1] - v.Position[1], v.Target[2] - v.Position[2]}
 	if parallel(axis, v.Up) {

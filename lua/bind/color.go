@@ -15,7 +15,7 @@ type color struct{ tint.RGB }
 
 func colorCalls() []call {
 	return []call{
-		{name: "color", params: "hex!", run: colorHex},
+		{name: "color", params: "hex!", usage: `color takes "#rrggbb"; for three numbers write color.srgb(r/255, g/255, b/255)`, run: colorHex},
 		{name: "color.srgb", params: "r! g! b!", run: colorSRGB},
 		{name: "color.linear", params: "r! g! b!", run: colorLinear},
 		{name: "color.grey", params: "y!", run: colorGrey},
@@ -60,8 +60,11 @@ func number32(v float32) string { return strings.TrimPrefix(fmt.Sprint(v), "+") 
 func (a *args) pushColor(c tint.RGB) lua.LValue { return a.env.push(a.l, color{c}) }
 
 func colorHex(a *args) lua.LValue {
-	var hex string
-	a.text("hex", &hex)
+	v := a.get("hex")
+	if v.Type() != lua.LTString {
+		a.failf("takes \"#rrggbb\", got %s%s", describe(v), colorAdvice(v))
+	}
+	hex := a.checkText("hex", v)
 	c, err := tint.ParseHex(hex)
 	if err != nil {
 		a.failf("%v", err)

@@ -34,7 +34,7 @@ type Forced struct {
 	Width, Height int // pixels, [1, model.MaxSide]; 0 leaves the scene's
 	Samples       int // [1, model.MaxSamples]; 0 leaves the scene's
 	Formats       []model.Format
-	Draft         bool // half the size, a quarter of the samples and twice the noise, of the scene's or of those above
+	Draft         bool // half the size and a quarter of the samples where they are not given above, and twice the noise
 }
 
 // Env collects the plan while a scene runs. The exported fields are set before Open and not changed after.

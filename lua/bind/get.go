@@ -60,11 +60,7 @@ func (a *args) checkWord(what string, v lua.LValue, words []string) int {
 	if !ok {
 		a.failf("%s must be one of %s, got %s", what, quoted(words), describe(v))
 	}
-	hint := ""
-	if n := Nearest(string(s), words); n != "" {
-		hint = "; did you mean \"" + n + "\"?"
-	}
-	a.failf("%s must be one of %s, got %s%s", what, quoted(words), describe(v), hint)
+	a.failf("%s must be one of %s, got %s%s", what, quoted(words), describe(v), Guess(string(s), words))
 	return 0
 }
 

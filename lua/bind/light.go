@@ -137,7 +137,7 @@ func (a *args) place(l *light) {
 	}
 	a.point("target", &l.Target, place)
 	if l.Position == l.Target && !(l.Kind == model.LightArea && l.Shape == model.AreaSphere) {
-		a.failf("position and target must be two points, both are %s", describePoint(l.Target))
+		a.failf("position and target must be two different points, both are %s", describePoint(l.Target))
 	}
 }
 

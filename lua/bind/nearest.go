@@ -7,9 +7,13 @@ import (
 )
 
 // Nearest returns the known name that a mistyped one is likeliest to mean, the first of equals, or "" where none is near: about a
-// third of its letters may be wrong.
+// third of its letters may be wrong, but no more than one of up to five, as short words are too near to one another.
 func Nearest(name string, known []string) string {
-	best, most := "", (len([]rune(name))+1)/3
+	letters := len([]rune(name))
+	best, most := "", (letters+1)/3
+	if letters <= 5 {
+		most = min(most, 1)
+	}
 	for _, k := range known {
 		if d := distance(strings.ToLower(name), strings.ToLower(k), most); d < most || (d == most && best == "") {
 			best, most = k, d
@@ -48,20 +52,28 @@ func distance(a, b string, most int) int {
 	return min(last[len(to)], most+1)
 }
 
+// Guess is the nearest known name as messages give it, or "" where none is near.
+func Guess(name string, known []string) string {
+	if n := Nearest(name, known); n != "" {
+		return fmt.Sprintf("; did you mean %q?", n)
+	}
+	return ""
+}
+
 // Hint is the end of a message about an unknown name: the nearest known one, and all that are accepted where they are few.
 func Hint(name string, known []string) string {
-	hint := ";"
-	if n := Nearest(name, known); n != "" {
-		hint = fmt.Sprintf("; did you mean %q?", n)
+	if len(known) == 0 {
+		return ""
+	}
+	hint := Guess(name, known)
+	if hint == "" {
+		hint = ";"
 	}
 	const few = 40
-	switch {
-	case len(known) == 0:
-		return ""
-	case len(known) <= few:
-		return hint + " accepted: " + strings.Join(known, ", ")
+	if len(known) > few {
+		return fmt.Sprintf("%s accepted: one of %d names", hint, len(known))
 	}
-	return fmt.Sprintf("%s %d names are known", hint, len(known))
+	return hint + " accepted: " + strings.Join(known, ", ")
 }
 
 // sorted returns the names in the order of the alphabet.

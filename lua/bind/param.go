@@ -137,6 +137,18 @@ func (r paramRule) check(v lua.LValue) error {
 	return fmt.Errorf("must be one of %s, got %s", joined(words), canonical(v))
 }
 
+// numbers says which numbers are accepted.
+func (r paramRule) numbers() string {
+	what := "a number"
+	if r.integer {
+		what = "a whole number"
+	}
+	if math.IsInf(r.min, -1) && math.IsInf(r.max, 1) {
+		return what
+	}
+	return what + ", " + spanText(r.min, r.max)
+}
+
 func spanText(low, high float64) string {
 	switch {
 	case math.IsInf(low, -1):
@@ -153,7 +165,7 @@ func (r paramRule) parse(text string) (lua.LValue, error) {
 	case "number":
 		v, err := strconv.ParseFloat(strings.TrimSpace(text), 64)
 		if err != nil && !errors.Is(err, strconv.ErrRange) {
-			return nil, fmt.Errorf("must be a number, got %s", quote(text))
+			return nil, fmt.Errorf("must be %s, got %s", r.numbers(), quote(text))
 		}
 		return lua.LNumber(v), nil
 	case "boolean":

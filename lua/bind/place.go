@@ -101,8 +101,14 @@ func (a *args) knownSlot(name string, known []string) {
 	a.failf("materials: the mesh has no slot %q%s", name, Hint(name, known))
 }
 
-// thingsOf reads a list of things; lists in it count as their elements, so that a module may give several at once.
+// thingsOf reads a thing or a list of things; lists in it count as their elements, so that a module may give several at once.
 func (a *args) thingsOf(what string, v lua.LValue) []*thing {
+	if t, ok := valueOf[*thing](v); ok {
+		return []*thing{t}
+	}
+	if isLight(v) {
+		a.failf("%s must be things, got %s: lights = … takes it", what, describe(v))
+	}
 	var all []*thing
 	const deepest = 8
 	var walk func(v lua.LValue, deep int)
@@ -114,6 +120,8 @@ func (a *args) thingsOf(what string, v lua.LValue) []*thing {
 				walk(x, deep+1)
 			} else if _, ok := valueOf[*form](x); ok {
 				a.failf("%s must hold things, got a mesh at place %d: write place{ mesh = … }", what, i+1)
+			} else if isLight(x) {
+				a.failf("%s must hold things, got %s at place %d: lights = { … } takes it", what, describe(x), i+1)
 			} else {
 				a.failf("%s must hold things, got %s at place %d", what, describe(x), i+1)
 			}
@@ -124,6 +132,13 @@ func (a *args) thingsOf(what string, v lua.LValue) []*thing {
 	}
 	walk(v, 0)
 	return all
+}
+
+// isLight reports whether a value is a light or several.
+func isLight(v lua.LValue) bool {
+	_, one := valueOf[*light](v)
+	_, some := valueOf[*rig](v)
+	return one || some
 }
 
 // inView leaves out the backdrops, unless there is nothing else.

@@ -186,14 +186,37 @@ func TestFitFollowsSize(t *testing.T) {
 }
 
 func TestForced(t *testing.T) {
-	e := newEnv()
-	e.Forced = Forced{Width: 100, Height: 51, Samples: 10, Formats: []model.Format{model.FormatEXR}, Draft: true}
-	p, err := plan(t, e, ball+`frame{ things = { ball }, size = {300, 900}, samples = 3 }`)
-	if err != nil {
-		t.Fatal(message(err))
+	exr := []model.Format{model.FormatEXR}
+	for _, test := range []struct {
+		forced                 Forced
+		width, height, samples int
+	}{
+		{Forced{Formats: exr}, 300, 901, 11},
+		{Forced{Formats: exr, Draft: true}, 150, 450, 2},
+		{Forced{Formats: exr, Width: 100, Height: 51, Samples: 10}, 100, 51, 10},
+		{Forced{Formats: exr, Width: 100, Height: 51, Samples: 10, Draft: true}, 100, 51, 10},
+		{Forced{Formats: exr, Width: 100, Height: 51, Draft: true}, 100, 51, 2},
+		{Forced{Formats: exr, Samples: 10, Draft: true}, 150, 450, 10},
+	} {
+		e := newEnv()
+		e.Forced = test.forced
+		p, err := plan(t, e, ball+`frame{ things = { ball }, size = {300, 901}, samples = 11, formats = {"png", "exr-half"} }`)
+		if err != nil {
+			t.Fatal(message(err))
+		}
+		if s := p.Frames[0].Settings; s.Width != test.width || s.Height != test.height || s.Samples != test.samples || !slices.Equal(s.Formats, exr) {
+			t.Errorf("%+v: settings %+v", test.forced, s)
+		}
 	}
-	if s := p.Frames[0].Settings; s.Width != 50 || s.Height != 25 || s.Samples != 2 || !slices.Equal(s.Formats, []model.Format{model.FormatEXR}) {
-		t.Errorf("settings %+v", s)
+}
+
+// TestFormatsTakeAHyphen: the command line and scenes both write exr_half, and both take exr-half.
+func TestFormatsTakeAHyphen(t *testing.T) {
+	for _, formats := range []string{`"exr-half"`, `"exr_half"`, `{"exr-half"}`} {
+		p, err := plan(t, newEnv(), ball+`frame{ things = { ball }, formats = `+formats+` }`)
+		if err != nil || !slices.Equal(p.Frames[0].Settings.Formats, []model.Format{model.FormatEXRHalf}) {
+			t.Errorf("%s: error %v", formats, err)
+		}
 	}
 }
 
@@ -297,6 +320,15 @@ func TestSheets(t *testing.T) {
 	}
 	if len(p.Warnings) != 1 || !strings.Contains(p.Warnings[0].Text, "admits no frame") {
 		t.Errorf("warnings %v", p.Warnings)
+	}
+}
+
+// One thing, one light and one pass stand for a list of one.
+func TestOneForAList(t *testing.T) {
+	one := mustPlan(t, ball+`frame{ things = ball, lights = light.ambient{}, passes = "depth" }`)
+	list := mustPlan(t, ball+`frame{ things = { ball }, lights = { light.ambient{} }, passes = { "depth" } }`)
+	if model.Sum(one) != model.Sum(list) {
+		t.Errorf("got %+v, want %+v", one.Frames[0], list.Frames[0])
 	}
 }
 

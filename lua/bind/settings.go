@@ -1,6 +1,8 @@
 package bind
 
 import (
+	"strings"
+
 	lua "github.com/yuin/gopher-lua"
 
 	"lampbook/engine/kernel/tint"
@@ -104,11 +106,30 @@ func (a *args) readSettings(s *settings) {
 		s.Passes = wordSet[model.Pass](a, "passes", v, passWords)
 	}
 	if v := a.get("formats"); v != lua.LNil {
-		s.Formats = wordSet[model.Format](a, "formats", v, formatWords)
+		s.Formats = wordSet[model.Format](a, "formats", hyphens(a, v), formatWords)
 		if len(s.Formats) == 0 {
 			a.failf("formats must name at least one of %s", quoted(formatWords))
 		}
 	}
+}
+
+// hyphens is a word or a list of words as formats are written: "exr-half" reads as "exr_half".
+func hyphens(a *args, v lua.LValue) lua.LValue {
+	plain := func(v lua.LValue) lua.LValue {
+		if w, ok := v.(lua.LString); ok {
+			return lua.LString(strings.ReplaceAll(string(w), "-", "_"))
+		}
+		return v
+	}
+	t, ok := v.(*lua.LTable)
+	if !ok {
+		return plain(v)
+	}
+	out := &lua.LTable{}
+	for i, x := range a.list("formats", t, "words", 100) {
+		out.RawSetInt(i+1, plain(x))
+	}
+	return out
 }
 
 // wordSet reads a word or a list of words, none twice.
@@ -131,18 +152,21 @@ func wordSet[T ~uint8](a *args, name string, v lua.LValue, words []string) []T {
 
 // apply changes the settings to what the command line says.
 func (f Forced) apply(s *settings) {
-	if f.Width > 0 && f.Height > 0 {
+	sized := f.Width > 0 && f.Height > 0
+	if sized {
 		s.Width, s.Height = f.Width, f.Height
+	} else if f.Draft {
+		s.Width, s.Height = max(1, s.Width/2), max(1, s.Height/2)
 	}
 	if f.Samples > 0 {
 		s.Samples = f.Samples
+	} else if f.Draft {
+		s.Samples = max(1, s.Samples/4)
 	}
 	if len(f.Formats) > 0 {
 		s.Formats = f.Formats
 	}
 	if f.Draft {
-		s.Width, s.Height = max(1, s.Width/2), max(1, s.Height/2)
-		s.Samples = max(1, s.Samples/4)
 		s.Noise = min(2*s.Noise, model.MaxNoise) // a quarter of the rays doubles the error
 	}
 }

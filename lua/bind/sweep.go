@@ -1,6 +1,7 @@
 package bind
 
 import (
+	"fmt"
 	"math"
 
 	lua "github.com/yuin/gopher-lua"
@@ -10,7 +11,7 @@ import (
 
 func sweepCalls() []call {
 	return []call{
-		{name: "sweep", list: "axes", run: newSweep},
+		{name: "sweep", list: "axes", keyed: asAxis, run: newSweep},
 		{name: "turntable", keys: "frames start", run: newTurntable},
 	}
 }
@@ -28,6 +29,15 @@ type sweep struct {
 	count int
 	meta  *lua.LTable         // of the steps: reading an unknown key is an error
 	live  map[*lua.LTable]int // steps handed out last, one for each loop that runs, with the number of the next
+}
+
+// asAxis is how what was written as a key is written as an axis.
+func asAxis(key string, v lua.LValue) string {
+	values := "{value, …}"
+	if t, ok := v.(*lua.LTable); ok {
+		values = describeTable(t, 0)
+	}
+	return fmt.Sprintf(": write { {%s, %s} }", quote(key), values)
 }
 
 // newSweep reads { {"gloss", {4, 16}}, {"glaze", names} } and gives the iterator.

@@ -79,17 +79,3 @@ func splitPlace(msg string) (model.Pos, string) {
 	}
 	return model.Pos{File: m[1], Line: line}, msg[len(m[0]):]
 }
-
-// traced finds the places in the virtual machine's own account of the stack.
-var traced = regexp.MustCompile(`(?m)^\t(.+):(\d+): in `)
-
-// placesOf reads the places out of the virtual machine's account of the stack, innermost first.
-func placesOf(account string) []model.Pos {
-	var out []model.Pos
-	for _, m := range traced.FindAllStringSubmatch(account, -1) {
-		if line, err := strconv.Atoi(m[2]); err == nil {
-			out = append(out, model.Pos{File: m[1], Line: line})
-		}
-	}
-	return out
-}

@@ -7,8 +7,11 @@ import (
 	"io/fs"
 	"os"
 	"path/filepath"
+	"slices"
 	"strings"
 	"testing"
+
+	lua "github.com/yuin/gopher-lua"
 
 	"lampbook/lua/bind"
 )
@@ -95,7 +98,7 @@ func TestEvaluateErrors(t *testing.T) {
 		name, script, want string
 		set                []Override
 	}{
-		{"misspelt table", "ligth.point{}", "scene.lua:1: 'ligth' is not defined; did you mean 'light'?", nil},
+		{"misspelt table", "ligth.point{}", "scene.lua:1: 'ligth' is not defined; did you mean \"light\"?", nil},
 		{"misspelt function", "light.piont{}", "scene.lua:1: light has no", nil},
 		{"misspelt key", "\nmesh.sphere{ radus = 1 }", "scene.lua:2:", nil},
 		{"caught and thrown on", "local ok, e = pcall(mesh.sphere, { radius = -1 })\nerror(e, 0)", "scene.lua:1: mesh.sphere", nil},
@@ -104,7 +107,10 @@ func TestEvaluateErrors(t *testing.T) {
 		{"no frame", "local x = 1", "scene.lua: the scene registers no frame", nil},
 		{"unknown parameter", bowl, `"glos"`, []Override{{Name: "glos", Text: "1"}}},
 		{"wrong parameter", bowl, "gloss", []Override{{Name: "gloss", Text: "shiny"}}},
-		{"missing module", `require "riggs"`, "scene.lua:1: require: no module is called 'riggs'", nil},
+		{"missing module", `require "riggs"`, "scene.lua:1: require: no module is called 'riggs'; did you mean \"rigs\"? accepted: ", nil},
+		{"missing module, near to the scene's own name", `require "scen"`, "scene.lua:1: require: no module is called 'scen'; accepted: ", nil},
+		{"module of Lua", `require "os"`, "surfaces, or a .lua file beside the scene", nil},
+		{"missing table", `data.csv("none.csv")`, "none.csv: no such file beside the scene, in ", nil},
 		{"csv outside", `data.csv("/etc/passwd")`, "--assets DIR", nil},
 	} {
 		t.Run(c.name, func(t *testing.T) {
@@ -243,7 +249,7 @@ func TestFilesJail(t *testing.T) {
 		"../secret/key": "--assets DIR", filepath.Join(dir, "secret/key"): "--assets DIR", "/etc/passwd": "--assets DIR", "out.obj": "--assets DIR",
 		"abs.obj": "--assets DIR", "outdir/key": "--assets DIR", "sub/../../secret/key": "--assets DIR", "../scene-b.obj": "--assets DIR", "null.obj": "--assets DIR",
 		"": "empty", "sub": "a folder", "pipe.obj": "not a regular file", "loop.obj": "", "in.ojb": `did you mean "in.obj"?`, "sub/dep.obj": `did you mean "sub/deep.obj"?`,
-		"a\x00b": "zero byte", strings.Repeat("a/", 4000): "longer than", "none/none.obj": "no such file", "..": "", ".": "a folder",
+		"a\x00b": "zero byte", strings.Repeat("a/", 4000): "longer than", "none/none.obj": "none/none.obj: no such file beside the scene, in " + filepath.ToSlash(filepath.Join(dir, "scene")) + ", nor in --assets", "..": "", ".": "a folder",
 	} {
 		if at, err := f.Find(name); err == nil || !strings.Contains(err.Error(), want) {
 			t.Errorf("Find(%q) = %q, %v; want %q", name, at, err, want)
@@ -260,23 +266,16 @@ func TestFilesJail(t *testing.T) {
 	}
 }
 
-func TestParseOverride(t *testing.T) {
-	for text, want := range map[string]Override{"gloss=64": {Name: "gloss", Text: "64"}, "a=b=c": {Name: "a", Text: "b=c"}, " n =": {Name: "n"}} {
-		if got, err := ParseOverride(text); err != nil || got != want {
-			t.Errorf("%q: %+v, %v", text, got, err)
-		}
-	}
-	for _, text := range []string{"", "gloss", "=1"} {
-		if _, err := ParseOverride(text); err == nil || !strings.Contains(err.Error(), "NAME=VALUE") {
-			t.Errorf("%q: %v", text, err)
-		}
-	}
-}
-
 // TestEveryGlobalIsProtected assigns over each name of the scene language.
 func TestEveryGlobalIsProtected(t *testing.T) {
-	names := append(bind.Globals(), "print", "pcall", "math", "string", "table", "_G", "require")
-	for _, name := range names {
+	limits := Limits{}.withDefaults()
+	names := newSandbox(newMeter(t.Context(), limits), limits, func(l *lua.LState) { bind.Open(l, &bind.Env{}) }).names
+	for _, name := range []string{"frame", "mesh", "print", "pcall", "math", "string", "table", "require"} {
+		if !slices.Contains(names, name) {
+			t.Errorf("%s is not among the names %v", name, names)
+		}
+	}
+	for _, name := range append(names, "_G") {
 		path := scene(t, "scene.lua", name+" = 1")
 		if _, _, err := Evaluate(context.Background(), path, Options{}); err == nil || !strings.Contains(err.Error(), "belongs to the scene language") {
 			t.Errorf("%s = 1: %v", name, err)

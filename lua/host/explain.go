@@ -141,8 +141,16 @@ func (v view) variable(name string) (found lua.LValue, ok bool) {
 
 // path returns the value of a description such as lights.key, and the table that it was last looked up in. Metatables are not asked.
 func (v view) path(name string) (value lua.LValue, holder *lua.LTable, last string, ok bool) {
-	parts := strings.Split(name, ".")
-	if value, ok = v.variable(parts[0]); !ok {
+	var parts []string
+	if rest, is := strings.CutPrefix(name, requireHead); is {
+		module, fields, _ := strings.Cut(rest, requireTail)
+		parts = strings.Split(fields, ".") // the first is empty
+		value, ok = v.s.loaded[module]
+	} else {
+		parts = strings.Split(name, ".")
+		value, ok = v.variable(parts[0])
+	}
+	if !ok {
 		return nil, nil, "", false
 	}
 	for _, p := range parts[1:] {
@@ -220,10 +228,7 @@ func (v view) near(names []string) string {
 		}
 	}
 	slices.Sort(known)
-	if n := bind.Nearest(short(last), known); n != "" {
-		return fmt.Sprintf("; did you mean '%s'?", n)
-	}
-	return ""
+	return bind.Guess(short(last), known)
 }
 
 func (v view) indexFault(on []note, kindName, key string) string {

@@ -9,7 +9,7 @@ import (
 // The mistakes that people make, with the line and the words of the error that tells them.
 var faults = []struct{ name, script, want string }{
 	{"nil local", "local lamp\n\nlamp.radius = 1", "scene.lua:3: 'lamp' is nil, so it has no field 'radius'"},
-	{"nil global table field", "shop = { lamps = {} }\nprint(shop.lamp.size)", "scene.lua:2: 'shop.lamp' is nil, so it has no field 'size'; did you mean 'lamps'?"},
+	{"nil global table field", "shop = { lamps = {} }\nprint(shop.lamp.size)", "scene.lua:2: 'shop.lamp' is nil, so it has no field 'size'; did you mean \"lamps\"?"},
 	{"number indexed", "local n = 5\nprint(n.x)", "scene.lua:2: 'n' is a number, so it has no field 'x'"},
 	{"upvalue indexed", "local u\nlocal function f()\n  return u.x\nend\nf()", "scene.lua:3: 'u' is nil, so it has no field 'x'"},
 	{"one of two on a line", "local a, b = {}, nil\nprint(a.x, b.x)", "scene.lua:2: 'b' is nil, so it has no field 'x'"},
@@ -17,13 +17,13 @@ var faults = []struct{ name, script, want string }{
 	{"list item", "local rows = {}\nprint(rows[1].name)", "scene.lua:2: 'rows[1]' is nil, so it has no field 'name'"},
 	{"method of nil", "local rig\nrig:turned(5)", "scene.lua:2: 'rig' is nil, so it has no field 'turned'"},
 	{"unknown method", "local rig = {}\nrig:turned(5)", "scene.lua:2: 'rig:turned' is no function and cannot be called"},
-	{"call of nil field", "local t = { area = 1 }\nt.aria()", "scene.lua:2: 't.aria' is nil and cannot be called; did you mean 'area'?"},
+	{"call of nil field", "local t = { area = 1 }\nt.aria()", "scene.lua:2: 't.aria' is nil and cannot be called; did you mean \"area\"?"},
 	{"call of a number", "local n = 1\nn()", "scene.lua:2: 'n' is a number and cannot be called"},
-	{"misspelt global", "local gloss = 1\n\nprint(glos)", "scene.lua:3: 'glos' is not defined; did you mean 'gloss'?"},
-	{"misspelt function", "pritn(1)", "scene.lua:1: 'pritn' is not defined; did you mean 'print'?"},
+	{"misspelt global", "local gloss = 1\n\nprint(glos)", "scene.lua:3: 'glos' is not defined; did you mean \"gloss\"?"},
+	{"misspelt function", "pritn(1)", "scene.lua:1: 'pritn' is not defined; did you mean \"print\"?"},
 	{"unknown global", "print(quux)", "scene.lua:1: 'quux' is not defined"},
-	{"local out of scope", "do local depth = 1 end\nprint(depht)", "scene.lua:2: 'depht' is not defined; did you mean 'depth'?"},
-	{"own global misspelt", "counter = 1\nprint(countr)", "scene.lua:2: 'countr' is not defined; did you mean 'counter'?"},
+	{"local out of scope", "do local depth = 1 end\nprint(depht)", "scene.lua:2: 'depht' is not defined; did you mean \"depth\"?"},
+	{"own global misspelt", "counter = 1\nprint(countr)", "scene.lua:2: 'countr' is not defined; did you mean \"counter\"?"},
 	{"io", "io.open('x')", "scene.lua:1: 'io' is not available in a scene: files are read by"},
 	{"os", "print(os.time())", "scene.lua:1: 'os' is not available in a scene"},
 	{"loadstring", "loadstring('x = 1')()", "scene.lua:1: 'loadstring' is not available in a scene: code is loaded by require alone"},
@@ -36,7 +36,7 @@ var faults = []struct{ name, script, want string }{
 	{"rawset over a name", "rawset(_G, 'print', 1)", "scene.lua:1: rawset: the names of the scene language cannot be changed"},
 	{"arithmetic on nil", "local size\nlocal x = size * 2", "scene.lua:2: 'size' is nil, and '*' needs numbers"},
 	{"arithmetic, right side", "local step = {}\nlocal x = 2 + step", "scene.lua:2: 'step' is a table, and '+' needs numbers"},
-	{"arithmetic on a field", "local t = { width = 1 }\nlocal x = t.widht / 2", "scene.lua:2: 't.widht' is nil, and '/' needs numbers; did you mean 'width'?"},
+	{"arithmetic on a field", "local t = { width = 1 }\nlocal x = t.widht / 2", "scene.lua:2: 't.widht' is nil, and '/' needs numbers; did you mean \"width\"?"},
 	{"arithmetic on text", "local x = 'abc' + 1", "scene.lua:1: the text \"abc\" is no number, and '+' needs numbers"},
 	{"text and nil", "local x = '5' + nil", "scene.lua:1: nil and a string cannot take part in '+'"},
 	{"minus of nil", "local n\nlocal y = 1 local x = -n", "scene.lua:2: 'n' is nil and cannot be negated"},
@@ -86,6 +86,12 @@ var faults = []struct{ name, script, want string }{
 	{"zero byte", "x = 1\nx = \x00", "scene.lua:2: a zero byte is no text"},
 
 	{"unknown module", "require 'rigz'", "scene.lua:1: require:"},
+	{"method of a module, misspelt", "\nrequire('tools').hafl(4)", "scene.lua:2: 'require(\"tools\").hafl' is nil and cannot be called; did you mean \"half\"?"},
+	{"method of a module in a folder", "require 'more.tools'.hafl(4)", "scene.lua:1: 'require(\"more.tools\").hafl' is nil and cannot be called; did you mean \"half\"?"},
+	{"comment of another language", "local x = 1 // half of it", "scene.lua:1: unexpected '/': a comment begins with --"},
+	{"comment line of another language", "\n// a lamp\n", "scene.lua:2: unexpected '/': a comment begins with --"},
+	{"block comment of another language", "/* a lamp */", "scene.lua:1: unexpected '/': a comment begins with --"},
+	{"short word, two letters off", "print(patch)", "scene.lua:1: 'patch' is not defined"},
 	{"module out of the folder", "require '../secret'", "scene.lua:1: require: '../secret' is no module name"},
 	{"module by absolute path", "require '/etc/passwd'", "is no module name"},
 	{"fault in a module", "\nrequire 'faulty'", "faulty.lua:2: 'x' is nil, so it has no field 'y'"},
@@ -95,7 +101,8 @@ var faults = []struct{ name, script, want string }{
 
 var faultModules = map[string]string{
 	"faulty": "local x\nx.y = 1", "broken": "\nlocal x = = 1",
-	"tools": "local m = {}\nfunction m.half(v)\n  return v / 2\nend\nreturn m",
+	"more.tools": "return { half = function(v) return v / 2 end }",
+	"tools":      "local m = {}\nfunction m.half(v)\n  return v / 2\nend\nreturn m",
 }
 
 func TestFaults(t *testing.T) {

@@ -212,11 +212,14 @@ func (f *Files) complain(name string, err error) error {
 	shown := plain(name)
 	switch {
 	case errors.Is(err, fs.ErrNotExist):
-		where := f.roots[0].dir
-		if len(f.roots) > 1 {
-			where += " and the --assets folders"
+		where := "beside the scene"
+		if dir := f.roots[0].dir; dir != "." {
+			where += ", in " + dir
 		}
-		return fmt.Errorf("%s: no such file in %s%s%w", shown, where, f.similar(name), quiet{err})
+		if len(f.roots) > 1 {
+			where += ", nor in --assets"
+		}
+		return fmt.Errorf("%s: no such file %s%s%w", shown, where, f.similar(name), quiet{err})
 	case errors.Is(err, errOutside), escapes(err):
 		return fmt.Errorf("%s: lies outside the folders that the scene may read from (%s); --assets DIR adds one", shown, f.folders())
 	}
@@ -262,10 +265,10 @@ func (f *Files) similar(name string) string {
 	for _, r := range f.roots {
 		known = append(known, r.list(dir)...)
 	}
-	if near := bind.Nearest(path.Base(name), known); near != "" {
-		return fmt.Sprintf("; did you mean %q?", path.Join(dir, near))
+	for i, file := range known {
+		known[i] = path.Join(dir, file)
 	}
-	return ""
+	return bind.Guess(path.Clean(filepath.ToSlash(name)), known)
 }
 
 // modules lists the modules in a folder, as require names them.

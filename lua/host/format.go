@@ -148,7 +148,7 @@ func (s *sandbox) luaFormat(l *lua.LState) int {
 		}
 		d, n := readDirective(format[i:])
 		if n == 0 || !strings.ContainsRune("cdiouxXeEfgGqs", rune(d.verb)) {
-			s.raise(l, "string.format: '%s' in the format is no directive; known are %%c %%d %%i %%u %%o %%x %%X %%e %%E %%f %%g %%G %%q %%s %%%%, with widths up to 99",
+			s.raise(l, "string.format: '%s' in the format is no directive; accepted: %%c %%d %%i %%u %%o %%x %%X %%e %%E %%f %%g %%G %%q %%s %%%%, with widths up to 99",
 				show(lua.LString("%"+format[i:min(i+8, len(format))])))
 		}
 		i += n

@@ -28,15 +28,6 @@ type Options struct {
 // Override is a value for a parameter from the command line.
 type Override = bind.Override
 
-// ParseOverride reads NAME=VALUE.
-func ParseOverride(text string) (Override, error) {
-	name, value, ok := strings.Cut(text, "=")
-	if name = strings.TrimSpace(name); !ok || name == "" {
-		return Override{}, fmt.Errorf("%s: NAME=VALUE is accepted", quote(text))
-	}
-	return Override{Name: name, Text: value}, nil
-}
-
 // Evaluate runs the scene file and returns its plan, which is valid, and the library in which the scene's meshes were built, and which
 // builds the rest from the same files. The same files and options give the same plan, byte for byte. An error is an *Error.
 //
@@ -68,7 +59,7 @@ func Evaluate(ctx context.Context, scene string, o Options) (*model.Plan, *mesh.
 	library := mesh.NewLibrary(reading.Read)
 	env := &bind.Env{Scene: name, Files: reading, Meshes: meteredMeshes{meter, library}, Overrides: o.Set, Forced: o.Forced, Shipped: shipped}
 	s := newSandbox(meter, limits, func(l *lua.LState) { bind.Open(l, env) })
-	s.find = finder(files)
+	s.find = finder(files, path.Base(name))
 	s.fatal = env.Fatal
 	s.printer.w = o.Print
 	if err := s.run(name, text); err != nil {

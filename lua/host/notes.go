@@ -71,6 +71,9 @@ func named(e ast.Expr, depth int) string {
 		return object + "[…]"
 	case *ast.FuncCallExpr:
 		if x.Func != nil {
+			if m := required(x); m != "" {
+				return requireHead + m + requireTail
+			}
 			if f := named(x.Func, depth-1); f != "" {
 				return f + "(…)"
 			}
@@ -79,6 +82,20 @@ func named(e ast.Expr, depth int) string {
 		if r := named(x.Receiver, depth-1); r != "" {
 			return r + ":" + x.Method + "(…)"
 		}
+	}
+	return ""
+}
+
+// A module that is used where it is required reads as in the source: require("stands").table(…).
+const requireHead, requireTail = `require("`, `")`
+
+// required is the name of the module that a call requires, "" where it is no require of a plain name.
+func required(x *ast.FuncCallExpr) string {
+	if f, ok := x.Func.(*ast.IdentExpr); !ok || f.Value != "require" || len(x.Args) != 1 {
+		return ""
+	}
+	if name, ok := x.Args[0].(*ast.StringExpr); ok && moduleName(name.Value) {
+		return name.Value
 	}
 	return ""
 }

@@ -1,7 +1,9 @@
 package host
 
 import (
+	"cmp"
 	"errors"
+	"fmt"
 	"io/fs"
 	"path"
 	"slices"
@@ -69,15 +71,19 @@ func moduleName(name string) bool {
 	return true
 }
 
-// finder returns how modules are found: the program's own first, so that a scene's folder cannot change what they mean.
-func finder(files *Files) func(module string) (string, []byte, error) {
+// finder returns how modules are found: the program's own first, so that a scene's folder cannot change what they mean. The scene
+// itself is none.
+func finder(files *Files, scene string) func(module string) (string, []byte, error) {
 	return func(module string) (string, []byte, error) {
 		if text, ok := prelude.Source(module); ok {
 			return shippedFolder + module + ".lua", []byte(text), nil
 		}
 		file, err := files.Find(strings.ReplaceAll(module, ".", "/") + ".lua")
 		if errors.Is(err, fs.ErrNotExist) {
-			return "", nil, errors.New("no module is called " + quote(module) + bind.Hint(module, append(prelude.Names(), files.modules(path.Dir(strings.ReplaceAll(module, ".", "/")))...)))
+			known := append(prelude.Names(), files.modules(path.Dir(strings.ReplaceAll(module, ".", "/")))...)
+			known = slices.DeleteFunc(known, func(name string) bool { return name+".lua" == scene })
+			return "", nil, fmt.Errorf("no module is called %s%s accepted: %s, or a .lua file beside the scene",
+				quote(module), cmp.Or(bind.Guess(module, known), ";"), strings.Join(prelude.Names(), ", "))
 		}
 		if err != nil {
 			return "", nil, err

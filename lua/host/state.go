@@ -110,10 +110,7 @@ func (s *sandbox) undefined(l *lua.LState, name string) string {
 		}
 	}
 	slices.Sort(known)
-	if near := bind.Nearest(short(name), slices.Compact(known)); near != "" {
-		return fmt.Sprintf("'%s' is not defined; did you mean '%s'?", name, near)
-	}
-	return fmt.Sprintf("'%s' is not defined", name)
+	return fmt.Sprintf("'%s' is not defined%s", name, bind.Guess(short(name), slices.Compact(known)))
 }
 
 // withheld are the names of Lua that a scene has not, and what to do instead.

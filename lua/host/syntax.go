@@ -151,6 +151,8 @@ func advice(words []token, unexpected string, line, column int) string {
 		after = words[at+1].text
 	}
 	switch {
+	case unexpected == "/" && (before == "/" || after == "/" || after == "*"):
+		return ": a comment begins with --"
 	case after == "=" && strings.Contains(" + - * / .. ", " "+unexpected+" "):
 		return fmt.Sprintf(": write x = x %s … in full", unexpected)
 	case (unexpected == "+" || unexpected == "-") && after == unexpected:
