@@ -42,7 +42,7 @@ func plan(cmd *cobra.Command, r *request) error {
 	}
 	v := newView(cmd.OutOrStdout(), cmd.ErrOrStderr(), r)
 	v.warn(j.plan)
-	casts := run.Casts(j.plan, run.Options{Alone: r.alone})
+	casts := run.Casts(j.plan, run.Options{Alone: r.alone, Memory: r.memory})
 	sum := planSummary{Event: "end", Frames: len(j.plan.Frames), Casts: len(casts), Sheets: len(j.plan.Sheets)}
 	on := onSheets(j.plan)
 	v.say("%s: %s in %s, %s", r.scene, count(sum.Frames, "frame"), count(sum.Casts, "cast"), count(sum.Sheets, "sheet"))

@@ -88,7 +88,7 @@ func renderScene(cmd *cobra.Command, r *request) error {
 // renderFrames runs the plan and shows how it goes.
 func renderFrames(ctx context.Context, j *job, r *request, v *view, w *pictures) (run.Summary, error) {
 	events := make(chan run.Event, 256)
-	o := run.Options{Threads: r.threads, Alone: r.alone, Events: events}
+	o := run.Options{Threads: r.threads, Alone: r.alone, Memory: r.memory, Events: events}
 	shown := make(chan struct{})
 	m := newMeter(len(j.plan.Frames), run.Casts(j.plan, o))
 	go func() {

@@ -12,6 +12,7 @@ import (
 
 	"lampbook/engine/mesh"
 	"lampbook/engine/model"
+	"lampbook/engine/run"
 	"lampbook/lua/bind"
 	"lampbook/lua/host"
 )
@@ -43,6 +44,7 @@ func load(ctx context.Context, r *request, print io.Writer) (*job, error) {
 	if err != nil {
 		return nil, wrong(err)
 	}
+	run.Refuse(plan, r.memory)
 	files, err := planFiles(plan)
 	if err != nil {
 		return nil, wrong(err)

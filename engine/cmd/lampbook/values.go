@@ -46,6 +46,36 @@ func (v pictureSize) Type() string { return "WxH" }
 
 func (v pictureSize) String() string { return "" }
 
+// byteSize is an option's value: a number of bytes, in units of a thousand or of 1024.
+type byteSize struct{ to *int64 }
+
+// leastMemory holds a picture of the default size; mostMemory is beyond any machine.
+const leastMemory, mostMemory = 16 << 20, 1 << 50
+
+// byteUnits are the endings of a byteSize.
+var byteUnits = []struct {
+	name  string
+	bytes float64
+}{{"KiB", 1 << 10}, {"MiB", 1 << 20}, {"GiB", 1 << 30}, {"TiB", 1 << 40}, {"KB", 1e3}, {"MB", 1e6}, {"GB", 1e9}, {"TB", 1e12}}
+
+func (v byteSize) Set(text string) error {
+	for _, unit := range byteUnits {
+		if len(text) <= len(unit.name) || !strings.EqualFold(text[len(text)-len(unit.name):], unit.name) {
+			continue
+		}
+		n, err := strconv.ParseFloat(strings.TrimSpace(text[:len(text)-len(unit.name)]), 64)
+		if bytes := n * unit.bytes; err == nil && bytes >= leastMemory && bytes <= mostMemory {
+			*v.to = int64(bytes)
+			return nil
+		}
+	}
+	return fmt.Errorf("a size such as 800MB or 4GiB is accepted, 16MiB at least, got %q", text)
+}
+
+func (v byteSize) Type() string { return "SIZE" }
+
+func (v byteSize) String() string { return "" }
+
 // formatList is an option's value: picture formats with commas between.
 type formatList struct{ to *[]model.Format }
 
@@ -75,8 +105,7 @@ func (v formatList) String() string { return "" }
 func formatOf(name string) (model.Format, error) {
 	var known []string
 	for f, word := range bind.FormatNames() {
-		word = strings.ReplaceAll(word, "_", "-")
-		if strings.ReplaceAll(name, "_", "-") == word {
+		if strings.ReplaceAll(name, "-", "_") == word {
 			return model.Format(f), nil
 		}
 		known = append(known, word)
