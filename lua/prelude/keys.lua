@@ -52,7 +52,7 @@ local function hint(name, names)
     local d = distance(name:sub(1, 40):lower(), known:lower())
     if d < best then near, best = known, d end
   end
-  return (near and string.format("; did you mean %q?", near) or ".") .. " Accepted: " .. table.concat(names, ", ")
+  return (near and string.format("; did you mean %q?", near) or ";") .. " accepted: " .. table.concat(names, ", ")
 end
 
 --- What is wrong with a number, or nil.

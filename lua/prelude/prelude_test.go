@@ -112,13 +112,13 @@ func TestModules(t *testing.T) {
 // TestMistakes holds the modules to the language's rule: the scene's line, what was given, what is accepted, the nearest name.
 func TestMistakes(t *testing.T) {
 	for text, want := range map[string]string{
-		`rigs.three_point{ ration = 4 }`:                    `scene.lua:5: rigs.three_point: unknown key "ration"; did you mean "ratio"? Accepted: centre, `,
+		`rigs.three_point{ ration = 4 }`:                    `scene.lua:5: rigs.three_point: unknown key "ration"; did you mean "ratio"? accepted: centre, `,
 		`rigs.three_point{ ratio = 0.5 }`:                   `scene.lua:5: rigs.three_point: ratio must be a number 1 to 1000, got 0.5`,
 		`rigs.tent{ radius = 0 }`:                           `scene.lua:5: rigs.tent: radius must be a number > 0 metres, got 0`,
 		`rigs.strips{ radius = "5 cm" }`:                    `scene.lua:5: rigs.strips: radius must be a number > 0 metres, got "5 cm"`,
 		`rigs.strips(5)`:                                    `scene.lua:5: rigs.strips: takes a table in braces, got 5`,
 		`rigs.strips{ subject = 4 }`:                        `scene.lua:5: rigs.strips: subject must be a thing or a mesh, got 4`,
-		`rigs.tent{ 3 }`:                                    `scene.lua:5: rigs.tent: takes named values only, got one without a name. Accepted: `,
+		`rigs.tent{ 3 }`:                                    `scene.lua:5: rigs.tent: takes named values only, got one without a name; accepted: `,
 		`stands.table{ at = 3 }`:                            `scene.lua:5: stands.table: at must be a point {x, y, z}, got 3`,
 		`stands.cove{ distance = 0.2, bend = 0.3 }`:         `scene.lua:5: stands.cove: bend must be at most distance, 0.2 metres, got 0.3`,
 		`stands.ramp{ values = {} }`:                        `scene.lua:5: stands.ramp: values must be a list of reflectances`,
