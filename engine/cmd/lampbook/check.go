@@ -1,6 +1,7 @@
 package main
 
 import (
+	"context"
 	"fmt"
 	"io"
 
@@ -19,10 +20,7 @@ casting a ray or writing a file. Exit status 0: render would start with every fr
 frames would fail; 2: the scene is wrong.`,
 		Example: "  lampbook check scenes/catalogue.lua",
 		RunE: func(cmd *cobra.Command, args []string) error {
-			if err := r.accept(args[0]); err != nil {
-				return err
-			}
-			return check(cmd, &r)
+			return answer(cmd, &r, args[0], check)
 		},
 	}
 	addOptions(cmd, &r)
@@ -30,13 +28,12 @@ frames would fail; 2: the scene is wrong.`,
 }
 
 // check reads everything that the plan names.
-func check(cmd *cobra.Command, r *request) error {
-	j, err := load(cmd.Context(), r, cmd.ErrOrStderr())
+func check(ctx context.Context, r *request, v *view) error {
+	j, err := load(ctx, r, v)
 	if err != nil {
 		return err
 	}
 	p := j.plan
-	v := newView(cmd.OutOrStdout(), cmd.ErrOrStderr(), r)
 	v.warn(p)
 	reasons := j.readMeshes()
 	faulty := 0
@@ -49,15 +46,12 @@ func check(cmd *cobra.Command, r *request) error {
 	for _, line := range faultyFrames(p, func(i int) string { return reasons[i] }) {
 		v.fault(line)
 	}
-	v.emit(checkSummary{"end", len(p.Frames), faulty})
+	v.summary = checkSummary{Frames: len(p.Frames), Faulty: faulty}
 	verdict := "nothing wrong"
 	if faulty > 0 {
 		verdict = count(faulty, "frame") + " would fail"
 	}
 	v.say("%s: %s, %s, %s: %s", r.scene, count(len(p.Frames), "frame"), count(len(p.Sheets), "sheet"), meshesText(len(p.Meshes)), verdict)
-	if err := v.unwritten(); err != nil {
-		return failed(err)
-	}
 	if faulty > 0 {
 		return fault{status: statusFailed}
 	}
@@ -72,9 +66,14 @@ type checkedLine struct {
 }
 
 type checkSummary struct {
-	Event  string `json:"event"`
-	Frames int    `json:"frames"`
-	Faulty int    `json:"faulty"`
+	ending
+	Frames int `json:"frames"`
+	Faulty int `json:"faulty"`
+}
+
+func (s checkSummary) ended(e ending) any {
+	s.ending = e
+	return s
 }
 
 // readMeshes builds every mesh that a frame shows and returns, for each frame, why it would fail, or "".

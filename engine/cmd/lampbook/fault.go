@@ -10,6 +10,7 @@ import (
 type fault struct {
 	status int
 	err    error
+	told   bool // in JSON, too, with the end
 }
 
 func (f fault) Error() string {
@@ -24,18 +25,37 @@ func (f fault) Unwrap() error { return f.err }
 // wrong is a mistake on the command line or in the scene.
 func wrong(err error) error {
 	if errors.Is(err, errStopped) || errors.Is(err, context.Canceled) {
-		return fault{statusStopped, errors.New("lampbook: stopped")}
+		return fault{status: statusStopped, err: errors.New("lampbook: stopped")}
 	}
-	return fault{statusWrong, err}
+	return fault{status: statusWrong, err: err}
 }
 
 // wrongf is wrong for a mistake on the command line itself.
 func wrongf(format string, args ...any) error {
-	return fault{statusWrong, fmt.Errorf("lampbook: "+format, args...)}
+	return fault{status: statusWrong, err: fmt.Errorf("lampbook: "+format, args...)}
 }
 
 // failed is something that went wrong in the doing.
-func failed(err error) error { return fault{statusFailed, err} }
+func failed(err error) error { return fault{status: statusFailed, err: err} }
+
+// told marks an error as told in JSON.
+func told(err error) error {
+	if err == nil {
+		return nil
+	}
+	f, ok := err.(fault)
+	if !ok {
+		f = fault{status: statusOf(err), err: err}
+	}
+	f.told = true
+	return f
+}
+
+// isTold reports whether an error has been told in JSON.
+func isTold(err error) bool {
+	var f fault
+	return errors.As(err, &f) && f.told
+}
 
 // statusOf returns the exit status of an error that a command returned.
 func statusOf(err error) int {

@@ -48,6 +48,7 @@ func execute(args []string, stdout, stderr io.Writer) int {
 	root.SetOut(stdout)
 	root.SetErr(stderr)
 	err := root.ExecuteContext(ctx)
+	endWithoutView(args, stdout, err)
 	for _, fault := range faults(err) {
 		fmt.Fprintln(stderr, fault)
 	}

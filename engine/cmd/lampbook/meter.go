@@ -2,6 +2,7 @@ package main
 
 import (
 	"fmt"
+	"math"
 	"time"
 
 	"lampbook/engine/render"
@@ -67,14 +68,23 @@ func (m *meter) left(elapsed time.Duration) (time.Duration, bool) {
 	return time.Duration(float64(elapsed) * (1 - s) / s), true
 }
 
-// line says where the run stands: frames, rays per second, time left.
+// line says where the run stands: how much of the rays is cast, frames, rays per second, time left.
 func (m *meter) line(elapsed time.Duration) string {
-	text := fmt.Sprintf("%d/%d frames", m.finished, m.frames)
+	return fmt.Sprintf("%.0f %%, %s", math.Floor(100*m.share()), m.details(elapsed))
+}
+
+// details is line without the share, which a bar shows itself.
+func (m *meter) details(elapsed time.Duration) string {
+	text := fmt.Sprintf("%d of %s", m.finished, count(m.frames, "frame"))
 	if m.rays > 0 && elapsed > 0 {
 		text += ", " + rate(m.rays, elapsed)
 	}
 	if left, ok := m.left(elapsed); ok {
-		text += ", " + span(left) + " left"
+		if left < time.Second {
+			text += ", under 1 s left"
+		} else {
+			text += ", " + span(left) + " left"
+		}
 	}
 	return text
 }

@@ -1,6 +1,7 @@
 package main
 
 import (
+	"context"
 	"fmt"
 	"strings"
 	"time"
@@ -23,10 +24,7 @@ and what time and disk they are likely to take. It writes no file; for the estim
 a few of the plan's rays on this machine.`,
 		Example: "  lampbook plan scenes/first_sheet.lua --only glaze=celadon",
 		RunE: func(cmd *cobra.Command, args []string) error {
-			if err := r.accept(args[0]); err != nil {
-				return err
-			}
-			return plan(cmd, &r)
+			return answer(cmd, &r, args[0], plan)
 		},
 	}
 	addOptions(cmd, &r)
@@ -34,23 +32,21 @@ a few of the plan's rays on this machine.`,
 }
 
 // plan lists the job.
-func plan(cmd *cobra.Command, r *request) error {
-	ctx := cmd.Context()
-	j, err := load(ctx, r, cmd.ErrOrStderr())
+func plan(ctx context.Context, r *request, v *view) error {
+	j, err := load(ctx, r, v)
 	if err != nil {
 		return err
 	}
-	v := newView(cmd.OutOrStdout(), cmd.ErrOrStderr(), r)
 	v.warn(j.plan)
 	casts := run.Casts(j.plan, run.Options{Alone: r.alone, Memory: r.memory})
-	sum := planSummary{Event: "end", Frames: len(j.plan.Frames), Casts: len(casts), Sheets: len(j.plan.Sheets)}
+	sum := planSummary{Frames: len(j.plan.Frames), Casts: len(casts), Sheets: len(j.plan.Sheets)}
 	on := onSheets(j.plan)
 	v.say("%s: %s in %s, %s", r.scene, count(sum.Frames, "frame"), count(sum.Casts, "cast"), count(sum.Sheets, "sheet"))
 	for i, c := range casts {
 		rays := total(render.Estimate(c))
 		sum.Rays += rays
 		s := j.plan.Frames[c.Frames[0]].Settings
-		v.say("\ncast %d: %s, %d × %d, %d samples, at most %s rays", i+1, count(len(c.Frames), "frame"), s.Width, s.Height, s.Samples, raysText(rays))
+		v.say("\ncast %d: %s, %d × %d, %s, at most %s rays", i+1, count(len(c.Frames), "frame"), s.Width, s.Height, count(s.Samples, "sample"), raysText(rays))
 		for _, k := range c.Frames {
 			sum.RaysAlone += total(render.Estimate(render.Cast{Plan: j.plan, Frames: []int{k}}))
 			f := &j.plan.Frames[k]
@@ -79,10 +75,7 @@ func plan(cmd *cobra.Command, r *request) error {
 	v.say("\nrays  at most %s%s", raysText(sum.Rays), savingText(sum.Rays, sum.RaysAlone))
 	v.say("time  %s to %s on this machine", span(seconds(cost.seconds[0])), span(seconds(cost.seconds[1])))
 	v.say("disk  %s to %s in %s", bytesText(int64(cost.bytes[0])), bytesText(int64(cost.bytes[1])), r.out)
-	v.emit(sum)
-	if err := v.unwritten(); err != nil {
-		return failed(err)
-	}
+	v.summary = sum
 	return nil
 }
 
@@ -98,7 +91,7 @@ type plannedLine struct {
 
 // planSummary is the last JSON line of a plan.
 type planSummary struct {
-	Event     string     `json:"event"`
+	ending
 	Frames    int        `json:"frames"`
 	Casts     int        `json:"casts"`
 	Sheets    int        `json:"sheets"`
@@ -107,6 +100,11 @@ type planSummary struct {
 	RaysAlone int64      `json:"rays_alone"` // at most, if every frame were cast alone
 	Time      [2]float64 `json:"seconds"`    // likely from, to
 	Disk      [2]float64 `json:"bytes"`      // likely from, to
+}
+
+func (s planSummary) ended(e ending) any {
+	s.ending = e
+	return s
 }
 
 // seconds makes a duration of a number of seconds.

@@ -25,10 +25,7 @@ wrong; 3: stopped by a signal with work left. Ctrl-C stops in good order, twice 
 		Example: `  lampbook render scenes/first_sheet.lua
   lampbook render scenes/first_sheet.lua --draft --only glaze=celadon`,
 		RunE: func(cmd *cobra.Command, args []string) error {
-			if err := r.accept(args[0]); err != nil {
-				return err
-			}
-			return renderScene(cmd, &r)
+			return answer(cmd, &r, args[0], renderScene)
 		},
 	}
 	addOptions(cmd, &r)
@@ -36,9 +33,8 @@ wrong; 3: stopped by a signal with work left. Ctrl-C stops in good order, twice 
 }
 
 // renderScene renders a job into its folder.
-func renderScene(cmd *cobra.Command, r *request) error {
-	ctx := cmd.Context()
-	j, err := load(ctx, r, cmd.ErrOrStderr())
+func renderScene(ctx context.Context, r *request, v *view) error {
+	j, err := load(ctx, r, v)
 	if err != nil {
 		return err
 	}
@@ -47,18 +43,17 @@ func renderScene(cmd *cobra.Command, r *request) error {
 		return failed(err)
 	}
 	defer folder.close()
-	v := newView(cmd.OutOrStdout(), cmd.ErrOrStderr(), r)
 	v.warn(j.plan)
 
 	start := time.Now()
 	earlier := earlierFiles(folder)
 	w := newPictures(folder, j.plan)
-	summary, err := renderFrames(ctx, j, r, v, w)
+	done, err := renderFrames(ctx, j, r, v, w)
+	v.summary = totals(done, start)
 	stopped := errors.Is(err, errStopped)
 	if err != nil && !stopped {
 		// The pictures written so far are there: let the record say so, if the disk still takes it.
 		_ = writeRecord(j, w, nil, r, start)
-		v.emit(endOf(statusFailed, start, summary))
 		return failed(err)
 	}
 	for _, line := range faultyFrames(j.plan, func(i int) string { return w.taken[i].failure }) {
@@ -66,17 +61,20 @@ func renderScene(cmd *cobra.Command, r *request) error {
 	}
 	sheets, err := laySheets(w, r, v)
 	err = errors.Join(err, writeRecord(j, w, sheets, r, start))
+	for _, warning := range w.blankFrames(j.plan) {
+		v.warning(warning)
+	}
 	tellLeftOver(v, folder, earlier, j, w)
 	status := statusDone
 	switch {
-	case err != nil || summary.Failed > 0 && !stopped:
+	case err != nil || done.Failed > 0 && !stopped:
 		status = statusFailed
 	case stopped:
 		status = statusStopped
 	}
-	v.emit(endOf(status, start, summary))
-	v.say("%s", endText(summary, sheets, folder, time.Since(start)))
-	if err := errors.Join(err, v.unwritten()); err != nil {
+	v.summary = totals(done, start)
+	v.say("%s", endText(done, sheets, folder, time.Since(start)))
+	if err != nil {
 		return failed(err)
 	}
 	if status != statusDone {
@@ -117,14 +115,18 @@ type frameLine struct {
 	Seconds float64          `json:"seconds"`          // its share of its cast
 }
 
-// endOf is the last JSON line of a run.
-func endOf(status int, start time.Time, s run.Summary) any {
-	return endLine{"end", status, s.Done, s.Failed, s.Left, s.Rays, time.Since(start).Seconds()}
+// totals is what the last JSON line of a run says of it.
+func totals(s run.Summary, start time.Time) summary {
+	return runSummary{Done: s.Done, Failed: s.Failed, Left: s.Left, Rays: s.Rays, Seconds: time.Since(start).Seconds()}
 }
 
-type endLine struct {
-	Event   string  `json:"event"`
-	Status  int     `json:"status"` // the exit status
+func (s runSummary) ended(e ending) any {
+	s.ending = e
+	return s
+}
+
+type runSummary struct {
+	ending
 	Done    int     `json:"done"`
 	Failed  int     `json:"failed"`
 	Left    int     `json:"left"`

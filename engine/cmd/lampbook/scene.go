@@ -3,7 +3,6 @@ package main
 import (
 	"context"
 	"errors"
-	"io"
 	"io/fs"
 	"os"
 	"path/filepath"
@@ -24,9 +23,8 @@ type job struct {
 	library *mesh.Library
 }
 
-// load makes the job that a request describes: the same for render, plan and check. What the scene prints goes to print, unless the
-// request is for quiet or for JSON.
-func load(ctx context.Context, r *request, print io.Writer) (*job, error) {
+// load makes the job that a request describes: the same for render, plan and check. What the scene prints is shown by v.
+func load(ctx context.Context, r *request, v *view) (*job, error) {
 	if err := findScene(r.scene); err != nil {
 		return nil, err
 	}
@@ -34,9 +32,7 @@ func load(ctx context.Context, r *request, print io.Writer) (*job, error) {
 		Assets: r.assets,
 		Forced: bind.Forced{Width: r.size[0], Height: r.size[1], Samples: r.samples, Formats: r.formats, Draft: r.draft},
 	}
-	if !r.quiet && !r.json {
-		o.Print = print
-	}
+	o.Print = v.printer()
 	for _, a := range r.set {
 		o.Set = append(o.Set, bind.Override{Name: a.name, Text: a.value})
 	}

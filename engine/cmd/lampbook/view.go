@@ -30,7 +30,8 @@ type view struct {
 	bar       *progressbar.ProgressBar
 	meter     *meter
 	start     time.Time
-	wrongOut  error // the first error of writing to out
+	summary   summary // what the end says besides the status; nil: nothing
+	wrongOut  error   // the first error of writing to out
 }
 
 // newView chooses how to show a run.
@@ -97,9 +98,9 @@ func (v *view) progress() {
 	switch {
 	case v.json != nil:
 		left, _ := v.meter.left(elapsed)
-		v.emit(progressLine{"progress", v.meter.finished, v.meter.frames, v.meter.rays, elapsed.Seconds(), left.Seconds()})
+		v.emit(progressLine{"progress", v.meter.share(), v.meter.finished, v.meter.frames, v.meter.rays, elapsed.Seconds(), left.Seconds()})
 	case v.bar != nil:
-		v.bar.Describe(v.meter.line(elapsed))
+		v.bar.Describe(v.meter.details(elapsed))
 		_ = v.bar.Set64(min(int64(v.meter.share()*barSteps), barSteps-1)) // the last step would end the bar
 	case !v.quiet:
 		fmt.Fprintln(v.errs, v.meter.line(elapsed))
@@ -109,6 +110,7 @@ func (v *view) progress() {
 // progressLine is the JSON line of a run under way.
 type progressLine struct {
 	Event       string  `json:"event"`
+	Share       float64 `json:"share"` // of the rays, 0 to 1
 	Finished    int     `json:"finished"`
 	Frames      int     `json:"frames"`
 	Rays        int64   `json:"rays"`
@@ -116,8 +118,9 @@ type progressLine struct {
 	SecondsLeft float64 `json:"seconds_left"` // 0: not known yet
 }
 
-// remark tells people something beside the results.
+// remark tells something beside the results.
 func (v *view) remark(format string, args ...any) {
+	v.emit(textLine{"remark", fmt.Sprintf(format, args...)})
 	if v.quiet || v.json != nil {
 		return
 	}
@@ -151,17 +154,26 @@ func (v *view) emit(line any) {
 	}
 }
 
-// warn tells what the scene's author should know, though it is no error. What makes frames fail is told with these.
+// warn tells what the plan warns of, though it is no error. What makes frames fail is told with these.
 func (v *view) warn(p *model.Plan) {
 	failures := map[string]bool{}
 	for _, f := range p.Frames {
 		failures[f.Failure] = true
 	}
 	for _, w := range p.Warnings {
-		if text := place(w.Pos) + w.Text; !failures[text] {
-			v.remark("%s", text)
+		if !failures[place(w.Pos)+w.Text] {
+			v.warning(w)
 		}
 	}
+}
+
+// warning tells what the scene's author should know about a place in it.
+func (v *view) warning(w model.Warning) {
+	if v.json != nil {
+		v.emit(warningLine{"warning", w.Pos.File, w.Pos.Line, w.Text})
+		return
+	}
+	v.remark("%s%s", place(w.Pos), w.Text)
 }
 
 // unwritten is the error of results that could not be written, or nil.

@@ -38,13 +38,13 @@ func TestMeterCountsWork(t *testing.T) {
 		share float64
 		line  string // after two seconds
 	}{
-		{run.Event{Kind: run.CastStarted, Cast: 0, Frames: 2}, 0, "0/3 frames"},
-		{cameraRays(50), 0.125, "0/3 frames, 0.1 krays/s, 14 s left"},
-		{cameraRays(50), 0.25, "0/3 frames, 0.1 krays/s, 6.0 s left"},
-		{run.Event{Kind: run.FrameDone}, 0.25, "1/3 frames, 0.1 krays/s, 6.0 s left"},
-		{run.Event{Kind: run.CastStarted, Cast: 1, Frames: 1}, 0.25, "1/3 frames, 0.1 krays/s, 6.0 s left"},
-		{run.Event{Kind: run.FrameFailed, Frame: 1}, 0.25, "2/3 frames, 0.1 krays/s, 6.0 s left"},
-		{cameraRays(300), 1, "2/3 frames, 0.6 krays/s, 0 ms left"},
+		{run.Event{Kind: run.CastStarted, Cast: 0, Frames: 2}, 0, "0 %, 0 of 3 frames"},
+		{cameraRays(50), 0.125, "12 %, 0 of 3 frames, 0.1 krays/s, 14 s left"},
+		{cameraRays(50), 0.25, "25 %, 0 of 3 frames, 0.1 krays/s, 6.0 s left"},
+		{run.Event{Kind: run.FrameDone}, 0.25, "25 %, 1 of 3 frames, 0.1 krays/s, 6.0 s left"},
+		{run.Event{Kind: run.CastStarted, Cast: 1, Frames: 1}, 0.25, "25 %, 1 of 3 frames, 0.1 krays/s, 6.0 s left"},
+		{run.Event{Kind: run.FrameFailed, Frame: 1}, 0.25, "25 %, 2 of 3 frames, 0.1 krays/s, 6.0 s left"},
+		{cameraRays(300), 1, "100 %, 2 of 3 frames, 0.6 krays/s, under 1 s left"},
 	} {
 		m.take(step.event)
 		if got := m.share(); got != step.share {
@@ -59,8 +59,8 @@ func TestMeterCountsWork(t *testing.T) {
 func TestMeterOfAPlanWithoutRays(t *testing.T) {
 	m := newMeter(2, nil)
 	m.take(run.Event{Kind: run.FrameFailed})
-	if got := m.line(time.Hour); got != "1/2 frames" {
-		t.Errorf("got %q, want only the frames", got)
+	if got := m.line(time.Hour); got != "0 %, 1 of 2 frames" {
+		t.Errorf("got %q, want the share and the frames", got)
 	}
 }
 
@@ -82,7 +82,7 @@ func TestLogHasNoCarriageReturns(t *testing.T) {
 	v := newView(&out, &errs, &request{})
 	followed(t.Context(), v, run.Event{Kind: run.CastStarted}, cameraRays(40))
 	v.progress()
-	if v.bar != nil || strings.ContainsAny(errs.String(), "\r\x1b") || !strings.HasPrefix(errs.String(), "0/3 frames, ") || out.Len() > 0 {
+	if v.bar != nil || strings.ContainsAny(errs.String(), "\r\x1b") || !strings.HasPrefix(errs.String(), "10 %, 0 of 3 frames, ") || out.Len() > 0 {
 		t.Errorf("log %q, results %q; want one plain line in the log", errs.String(), out.String())
 	}
 }
@@ -93,7 +93,7 @@ func TestBarIsDrawnAndTakenAway(t *testing.T) {
 	v.bar = newBar(&errs)
 	followed(t.Context(), v, run.Event{Kind: run.CastStarted}, cameraRays(100))
 	v.progress()
-	if !strings.Contains(errs.String(), "25% |") || !strings.Contains(errs.String(), "0/3 frames") || strings.Contains(errs.String(), "\n") {
+	if !strings.Contains(errs.String(), "25% |") || !strings.Contains(errs.String(), "0 of 3 frames") || strings.Contains(errs.String(), "\n") {
 		t.Errorf("bar %q, want one line with 25%% and the frames", errs.String())
 	}
 	v.remark("a remark")
@@ -142,8 +142,8 @@ func TestJSONLines(t *testing.T) {
 			t.Errorf("line %q says something else than the events", line)
 		}
 	}
-	if got := strings.Join(events, " "); got != "frame progress" {
-		t.Errorf("events %q, want frame progress", got)
+	if got := strings.Join(events, " "); got != "frame progress remark" {
+		t.Errorf("events %q, want frame progress remark", got)
 	}
 }
 
