@@ -40,6 +40,7 @@ const (
 type ellipticCone struct {
 	pole, s, t geom.Vec3d // orthonormal; s and t along the cone's axes
 	a, b       float64    // half axes in the equal-area plane
+	cos, sin   float64    // disk: of the angle by which s has turned from the lamp's U
 	ia, ib     float64    // squared cotangents of the half angles along s and t
 	versine    float64    // circular: 1 - cos of the half angle
 	normal     geom.Vec3d // disk: unit normal that points away from the shading point
@@ -243,6 +244,9 @@ func (l *Lamp) prepareDisk(p geom.Vec3d, q *Prepared) {
 	c.pole = e.Scale(zx).Add(c.normal.Scale(zy))
 	c.s = e.Scale(zy).Sub(c.normal.Scale(zx))
 	c.t = e.Cross(c.normal)
+	// Straight under the disk e turns about with the point. Samples of neighbouring points must not turn with it, or they would no
+	// longer complete each other: places on the disc are counted from U.
+	c.cos, c.sin = e.Dot(l.U), e.Dot(l.U.Cross(c.normal))
 	q.mode = ellipse
 }
 
@@ -265,6 +269,18 @@ func (l *Lamp) prepareSphere(p geom.Vec3d, q *Prepared) {
 	c.versine = float64(sin*sin) / (1 + math.Sqrt(cos2))
 	c.far, c.radius = far, l.Radius
 	c.pole = d.Scale(1 / far)
-	c.s, c.t = frame(c.pole, geom.Vec3d{})
+	c.s, c.t = around(c.pole)
 	q.mode, q.weight = cone, float32(2*math.Pi*c.versine)
+}
+
+// around returns two unit vectors that with the unit vector n make an orthonormal basis: the x and z axes, carried along by the shortest turn
+// from the y axis to n. They change smoothly with n but straight below, so that samples of neighbouring points complete each other.
+// Source: Frisvad 2012, "Building an orthonormal basis from a 3D unit vector without normalization", with y as the pole.
+func around(n geom.Vec3d) (s, t geom.Vec3d) {
+	if n.Y < -1+1e-9 {
+		return geom.Vec3d{X: 1}, geom.Vec3d{Z: -1}
+	}
+	a := 1 / (1 + n.Y)
+	b := float64(-n.X*n.Z) * a
+	return geom.Vec3d{X: 1 - float64(float64(n.X*n.X)*a), Y: -n.X, Z: b}, geom.Vec3d{X: b, Y: -n.Z, Z: 1 - float64(float64(n.Z*n.Z)*a)}
 }

@@ -76,6 +76,7 @@ func (c *ellipticCone) disk(u, v float32) (wi geom.Vec3, dist, weight float32) {
 	if x == 0 && y == 0 {
 		x = 1e-12 // a radius of no length has no direction
 	}
+	x, y = float64(x*c.cos)+float64(y*c.sin), float64(y*c.cos)-float64(x*c.sin)
 	r2 := min(1, float64(x*x)+float64(y*y)) // rounding must not pass the rim
 	ex, ey := c.a*x, c.b*y
 	ex2, ey2 := float64(ex*ex), float64(ey*ey)
