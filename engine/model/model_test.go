@@ -65,6 +65,9 @@ func TestValidate(t *testing.T) {
 		{"profile", func(p *Plan) { p.Meshes[0].Profile = [][2]float64{{nan, 0}} }, "finite"},
 		{"table", func(p *Plan) { p.Meshes[0].Raw = &RawMesh{Positions: [][3]float64{{nan}}} }, "finite"},
 		{"sheet", func(p *Plan) { p.Sheets = []Sheet{{Name: "a b"}} }, "sheet name"},
+		{"per line", func(p *Plan) { p.Sheets = []Sheet{{Name: "a", PerLine: -1}} }, "per_line must be"},
+		{"tile", func(p *Plan) { p.Sheets = []Sheet{{Name: "a", Tile: [2]int{8, 100}}} }, "16 to 4096 pixels a side, got 8 and 100"},
+		{"paper", func(p *Plan) { p.Sheets = []Sheet{{Name: "a", Paper: 9}} }, "paper 9"},
 		{"sheets", func(p *Plan) { p.Sheets = []Sheet{{Name: "a"}, {Name: "a"}} }, "given before"},
 	}
 	for _, tt := range tests {

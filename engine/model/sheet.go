@@ -1,5 +1,7 @@
 package model
 
+import "strings"
+
 // Sheet is a contact sheet: a pivot of the plan's frames by their tags.
 type Sheet struct {
 	Name    string   // file name without its ending, as frame names are made; unique among the sheets
@@ -12,13 +14,39 @@ type Sheet struct {
 	Where   []TagChoice // only frames for which every choice holds
 	Caption string      // under each tile; {key} stands for a tag's value, {name} for the frame's name; empty: none
 	PerLine int         // a sheet with one axis: tiles in a line; 0 means what brings the sheet nearest to √2 : 1
-	Tile    [2]int      // pixels that a tile is scaled to, keeping its shape; 0, 0 means the picture's own
+	Tile    [2]int      // pixels that a tile is scaled to, keeping its shape, [MinTile, MaxTile]; 0, 0 means the picture's own
 	Paper   Paper
 	Pos     Pos // where the scene registered it
 }
 
 // AxisPass is the name that, as a row, column or page, stands for each frame's picture and passes instead of a tag.
 const AxisPass = "pass"
+
+// CaptionName is the key that, in a caption, stands for the frame's name.
+const CaptionName = "name"
+
+// CaptionPart is a stretch of a caption: text, and the key in braces after it. Key is "" where none follows.
+type CaptionPart struct{ Text, Key string }
+
+// CaptionParts cuts the caption up. A brace without its partner, or with nothing in it, is text.
+func (s *Sheet) CaptionParts() []CaptionPart {
+	var parts []CaptionPart
+	for rest := s.Caption; rest != ""; {
+		open := strings.IndexByte(rest, '{')
+		if open < 0 {
+			return append(parts, CaptionPart{rest, ""})
+		}
+		length := strings.IndexByte(rest[open:], '}')
+		if length < 2 {
+			parts = append(parts, CaptionPart{rest[:open+1], ""})
+			rest = rest[open+1:]
+			continue
+		}
+		parts = append(parts, CaptionPart{rest[:open], rest[open+1 : open+length]})
+		rest = rest[open+length+1:]
+	}
+	return parts
+}
 
 // TagOrder is an order of one tag's values.
 type TagOrder struct {

@@ -16,6 +16,8 @@ const (
 	MaxLightSamples = 1_024
 	MaxThings       = 100_000 // in a frame
 	MaxLights       = 256     // in a frame
+	MinTile         = 16      // pixels, of a sheet's own tiles
+	MaxTile         = 4_096
 	MaxNameLength   = 120
 )
 
@@ -73,6 +75,22 @@ func (p *Plan) Validate() error {
 			return fmt.Errorf("%ssheet name %q was given before", s.Pos.prefix(), s.Name)
 		}
 		sheets[s.Name] = true
+		if err := s.validate(); err != nil {
+			return fmt.Errorf("%ssheet %q: %w", s.Pos.prefix(), s.Name, err)
+		}
+	}
+	return nil
+}
+
+// validate checks the sheet's numbers. Which tags its axes may name only the scene's end tells; a sheet that finds none of them shows nothing.
+func (s *Sheet) validate() error {
+	switch w, h := s.Tile[0], s.Tile[1]; {
+	case s.PerLine < 0:
+		return fmt.Errorf("per_line must be at least 0, got %d", s.PerLine)
+	case (w != 0 || h != 0) && (min(w, h) < MinTile || max(w, h) > MaxTile):
+		return fmt.Errorf("tile must be %d to %d pixels a side, got %d and %d", MinTile, MaxTile, w, h)
+	case s.Paper > PaperDark:
+		return fmt.Errorf("paper %d is not known", s.Paper)
 	}
 	return nil
 }

@@ -26,7 +26,7 @@
 ---@field shift? number[] {x, y}, moves the picture to the right and up, in its widths and heights, -10 to 10; default {0, 0}
 ---@field height? number orthographic, and needed there: metres from bottom to top, > 0; default none
 ---@field f_number? number aperture, > 0: small numbers blur what is out of focus; default a pinhole, all sharp
----@field exposure? number stops, -100 to 100; default that of settings
+---@field exposure? number stops, -100 to 100; at 0 stops one nit shows as 1.0; default that of settings
 ---@field ev100? number exposure value at ISO 100, -90 to 90, instead of exposure; default none
 ---@field projection? "perspective"|"orthographic" default "perspective"
 
@@ -45,7 +45,7 @@ camera = {}
 ---@field sensor? number width of the sensor in millimetres, > 0; default 36
 ---@field over? turntable frames the things over a whole turn about the vertical through where each stands; default as they stand
 ---@field f_number? number aperture, > 0: small numbers blur what is out of focus; default a pinhole, all sharp
----@field exposure? number stops, -100 to 100; default that of settings
+---@field exposure? number stops, -100 to 100; at 0 stops one nit shows as 1.0; default that of settings
 ---@field ev100? number exposure value at ISO 100, -90 to 90, instead of exposure; default none
 ---@field projection? "perspective"|"orthographic" default "perspective"
 

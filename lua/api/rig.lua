@@ -45,6 +45,7 @@ function rig:with(changes) end
 ---@field facing? point where its face points; default {0, 0, 1}
 
 --- An incident light meter: the exposure in stops that shows an 18 % grey card there as 18 % grey, with nothing in the light's way.
+--- With the default tone, "shoulder", the card comes out as sRGB 118; "neutral" shows matt surfaces deeper, by up to 0.04 of linear light.
 --- Example: studio:meter{ at = {0, 0.05, 0}, facing = {0, 0.4, 1} }
 ---@param keys? rig.meter.keys default {}
 ---@return number stops

@@ -7,7 +7,7 @@
 ---@field light_samples? integer shadow rays a camera ray and area light, 1 to 1024; default 1
 ---@field seed? integer of the sample points, 0 to 4294967295: keep one for stills and comparisons, so that tiles differ by what they show and not by their noise; give each frame of an animation its own, or its noise stands still before what moves; default 0
 ---@field filter? "blackman_harris"|"box" of pixels; default "blackman_harris"
----@field exposure? number stops, -100 to 100; default metered among the things of the first frame that states none, and held from there on
+---@field exposure? number stops, -100 to 100; at 0 stops one nit shows as 1.0, and each more doubles what is shown; default metered among the things of the first frame that states none, and held from there on
 ---@field tone? "shoulder"|"neutral"|"clip"|"reinhard"|"aces" curve from light to screen: shoulder leaves colours up to 0.8 as they are and compresses highlights, neutral is the Khronos curve for surfaces with a 4 % reflection, aces a published fit; default "shoulder"
 ---@field white? number tone "reinhard": the luminance that becomes white, > 0; default 4
 ---@field background? color|"transparent" what shows where nothing stands; default color.grey(0.18)

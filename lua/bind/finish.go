@@ -18,11 +18,8 @@ func (e *Env) Finish() (*model.Plan, error) {
 	if len(e.plan.Frames) == 0 {
 		return nil, fmt.Errorf("%s: the scene registers no frame: frame{ things = { … } } registers one", e.Scene)
 	}
-	if err := e.checkSheets(); err != nil {
+	if err := e.finishSheets(); err != nil {
 		return nil, err
-	}
-	if len(e.plan.Sheets) == 0 {
-		e.defaultSheet()
 	}
 	if err := e.plan.Validate(); err != nil {
 		return nil, err

@@ -302,24 +302,35 @@ func TestSheets(t *testing.T) {
 	p := mustPlan(t, ball+`
 		settings{ passes = { "diffuse", "depth" } }
 		for step in sweep{ {"a", {1, 2}}, {"b", {"x", "y"}} } do frame{ tags = step, things = { ball } } end
-		sheet{ title = "Über: all", rows = {"b", "a"}, columns = "pass", where = { a = 1, b = {"x", "y"} }, order = { b = {"y"} },
-			caption = "{a} {name}", per_line = 3, tile = {120, 90}, paper = "light" }
+		sheet{ title = "Über: all", columns = {"b", "a"}, pages = "pass", where = { a = 1, b = {"x", "y"} }, order = { b = {"y"} },
+			caption = "{a} {name} {pass}", per_line = 3, tile = {120, 90}, paper = "light" }
 		sheet{ title = "Über: all" }
-		sheet{ where = { a = 7 } }`)
+		sheet{ where = { a = 2 } }
+		sheet{ per_line = 2 }
+		sheet{ name = "by-hand" }`)
 	text := func(s string) model.Value { return model.Value{Kind: model.TextValue, Text: s} }
 	one := model.Value{Kind: model.NumberValue, Number: 1}
-	want := model.Sheet{Name: "uber-all", Title: "Über: all", Rows: []string{"b", "a"}, Columns: []string{"pass"},
+	want := model.Sheet{Name: "uber-all", Title: "Über: all", Columns: []string{"b", "a"}, Pages: []string{"pass"},
 		Order:   []model.TagOrder{{Key: "b", Values: []model.Value{text("y")}}},
 		Where:   []model.TagChoice{{Key: "a", Values: []model.Value{one}}, {Key: "b", Values: []model.Value{text("x"), text("y")}}},
-		Caption: "{a} {name}", PerLine: 3, Tile: [2]int{120, 90}, Paper: model.PaperLight, Pos: model.Pos{File: "scenes/test.lua", Line: 4}}
+		Caption: "{a} {name} {pass}", PerLine: 3, Tile: [2]int{120, 90}, Paper: model.PaperLight, Pos: model.Pos{File: "scenes/test.lua", Line: 4}}
 	if !reflect.DeepEqual(p.Sheets[0], want) {
 		t.Errorf(" got %+v\nwant %+v", p.Sheets[0], want)
 	}
-	if p.Sheets[1].Name != "uber-all-2" || p.Sheets[2].Name != "sheet" {
-		t.Errorf("names %q, %q", p.Sheets[1].Name, p.Sheets[2].Name)
-	}
-	if len(p.Warnings) != 1 || !strings.Contains(p.Warnings[0].Text, "admits no frame") {
-		t.Errorf("warnings %v", p.Warnings)
+	// What is left out is as on the sheet of a scene that asks for none.
+	for i, want := range []struct {
+		name, title   string
+		columns, rows []string
+	}{
+		{"uber-all-2", "Über: all", []string{"a"}, []string{"b"}},
+		{"test", "Test", []string{"b"}, nil},
+		{"test-2", "Test", []string{"a", "b"}, nil},
+		{"by-hand", "", []string{"a"}, []string{"b"}},
+	} {
+		s := p.Sheets[i+1]
+		if s.Name != want.name || s.Title != want.title || !slices.Equal(s.Columns, want.columns) || !slices.Equal(s.Rows, want.rows) {
+			t.Errorf("got %+v, want %+v", s, want)
+		}
 	}
 }
 
@@ -337,14 +348,15 @@ func TestDefaultSheet(t *testing.T) {
 	for _, c := range []struct {
 		loop          string
 		columns, rows []string
-		caption       string
 	}{
-		{`frame{ tags = { a = i, b = i % 2, fixed = 1, c = -i }, things = { ball } }`, []string{"a"}, []string{"b", "c"}, ""},
-		{`frame{ things = { ball } }`, nil, nil, "{name}"},
+		{`frame{ tags = { a = i, b = i % 2, fixed = 1, c = -i }, things = { ball } }`, []string{"a"}, []string{"b", "c"}},
+		{`frame{ things = { ball } }`, nil, nil},
+		{`frame{ tags = { a = i }, things = { ball } } frame{ tags = { a = i, b = 1 }, things = { ball } }`, nil, nil}, // b would leave half of them out
+		{`frame{ name = "f" .. i, tags = { a = i % 2 }, things = { ball } }`, nil, nil},                                // a does not tell them apart
 	} {
 		p := mustPlan(t, ball+"for i = 1, 4 do "+c.loop+" end")
 		s := p.Sheets[0]
-		if !slices.Equal(s.Columns, c.columns) || !slices.Equal(s.Rows, c.rows) || s.Caption != c.caption || s.Name != "test" {
+		if !slices.Equal(s.Columns, c.columns) || !slices.Equal(s.Rows, c.rows) || s.Caption != "" || s.Name != "test" {
 			t.Errorf("%s: %+v", c.loop, s)
 		}
 	}

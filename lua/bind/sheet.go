@@ -2,6 +2,7 @@ package bind
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 
 	lua "github.com/yuin/gopher-lua"
@@ -22,7 +23,7 @@ const maxSheets = 1000
 
 var paperWords = []string{model.PaperGrey: "grey", model.PaperLight: "light", model.PaperDark: "dark"}
 
-// newSheet registers a contact sheet. Whether its tags exist is known when the scene ends: see checkSheets.
+// newSheet registers a contact sheet. Whether its tags exist is known when the scene ends: see finishSheets.
 func (a *args) newSheet() {
 	e := a.env
 	if len(e.plan.Sheets) == maxSheets {
@@ -57,10 +58,12 @@ func (a *args) newSheet() {
 	if a.text("caption", &s.Caption) && (!readable(s.Caption) || len(s.Caption) > maxTagLength) {
 		a.failf("caption must be a readable text of at most %d bytes, got %s", maxTagLength, quote(s.Caption))
 	}
-	a.integer("per_line", &s.PerLine, 1, 10_000)
+	if a.integer("per_line", &s.PerLine, 1, 10_000) && len(s.Rows) > 0 && len(s.Columns) > 0 {
+		a.failf("per_line is for sheets with one axis: rows and columns make the lines of this one")
+	}
 	if v := a.get("tile"); v != lua.LNil {
 		var tile [2]float64
-		a.checkNumbers("tile", v, tile[:], "{width, height} in pixels", between(1, model.MaxSide, ""))
+		a.checkNumbers("tile", v, tile[:], "{width, height} in pixels", between(model.MinTile, model.MaxTile, "pixels"))
 		for i, t := range tile {
 			if s.Tile[i] = int(t); float64(s.Tile[i]) != t {
 				a.failf("tile must be whole numbers of pixels, got %s", describe(v))
@@ -70,7 +73,7 @@ func (a *args) newSheet() {
 	paper := 0
 	a.oneOf("paper", paperWords, &paper)
 	s.Paper = model.Paper(paper)
-	s.Name = a.sheetName(s.Title)
+	s.Name = a.sheetName(&s)
 	e.sheets[strings.ToLower(s.Name)] = true
 	e.plan.Sheets = append(e.plan.Sheets, s)
 }
@@ -104,8 +107,8 @@ func (a *args) tagTable(name string) []model.TagOrder {
 	return out
 }
 
-// sheetName reads a sheet's name, or makes it of the title.
-func (a *args) sheetName(title string) string {
+// sheetName reads a sheet's name, or makes it of the title. A sheet with neither is called as the scene is.
+func (a *args) sheetName(s *model.Sheet) string {
 	var name string
 	if a.text("name", &name) {
 		switch {
@@ -116,7 +119,11 @@ func (a *args) sheetName(title string) string {
 		}
 		return name
 	}
-	return a.env.freeSheetName(title)
+	if s.Title == "" {
+		s.Title = titleOf(a.env.stem())
+		return a.env.freeSheetName(a.env.stem())
+	}
+	return a.env.freeSheetName(s.Title)
 }
 
 // freeSheetName makes a name of a title: "Bowl: gloss by glaze" gives "bowl-gloss-by-glaze".
@@ -139,143 +146,138 @@ func (e *Env) freeSheetName(title string) string {
 	return name
 }
 
-// checkSheets refuses tags that no frame has.
-func (e *Env) checkSheets() error {
-	var known []string
-	has := map[string]bool{}
-	for _, f := range e.plan.Frames {
-		for _, t := range f.Tags {
-			if !has[t.Key] {
-				has[t.Key] = true
-				known = append(known, t.Key)
-			}
-		}
+// finishSheets refuses tags that no frame has and sheets without frames, and gives axes to the sheets that name none. A scene
+// without a sheet gets one of all its frames.
+func (e *Env) finishSheets() error {
+	if len(e.plan.Sheets) == 0 {
+		e.plan.Sheets = []model.Sheet{{Title: titleOf(e.stem()), Name: e.freeSheetName(e.stem())}}
 	}
-	for _, s := range e.plan.Sheets {
-		for _, ax := range []struct {
-			name string
-			keys []string
-		}{{"rows", s.Rows}, {"columns", s.Columns}, {"pages", s.Pages}} {
-			for _, key := range ax.keys {
-				if key == model.AxisPass {
-					if !e.passes {
-						return fmt.Errorf("%ssheet: %s names the passes, and no frame has any: ask for them in settings{ passes = … }", prefix(s.Pos), ax.name)
-					}
-					continue
-				}
-				if !has[key] {
-					return unknownTag(s, ax.name, key, known)
-				}
+	known := e.tagKeys()
+	for i := range e.plan.Sheets {
+		s := &e.plan.Sheets[i]
+		if err := e.checkSheet(s, known); err != nil {
+			return fmt.Errorf("%ssheet: %w", prefix(s.Pos), err)
+		}
+		var frames []*model.Frame
+		for i := range e.plan.Frames {
+			if f := &e.plan.Frames[i]; s.Shows(f) {
+				frames = append(frames, f)
 			}
 		}
-		for _, w := range s.Where {
-			if !has[w.Key] {
-				return unknownTag(s, "where", w.Key, known)
-			}
+		if len(frames) == 0 {
+			return fmt.Errorf("%ssheet: where admits none of the scene's frames", prefix(s.Pos))
 		}
-		for _, o := range s.Order {
-			if !has[o.Key] && o.Key != model.AxisPass {
-				return unknownTag(s, "order", o.Key, known)
-			}
-		}
-		if err := checkCaption(s, has, known); err != nil {
-			return err
-		}
-		if !e.anyFrame(s.Where) {
-			e.warn(s.Pos, "sheet: where admits no frame, so the sheet will be empty")
+		if len(s.Rows) == 0 && len(s.Columns) == 0 && len(s.Pages) == 0 {
+			giveAxes(s, frames)
 		}
 	}
 	return nil
 }
 
-func unknownTag(s model.Sheet, what, key string, known []string) error {
-	if len(known) == 0 {
-		return fmt.Errorf("%ssheet: %s names the tag %s, and no frame has tags", prefix(s.Pos), what, quote(key))
-	}
-	return fmt.Errorf("%ssheet: %s names a tag that no frame has, %s%s", prefix(s.Pos), what, quote(key), Hint(key, known))
-}
-
-// checkCaption checks the names in braces.
-func checkCaption(s model.Sheet, has map[string]bool, known []string) error {
-	rest := s.Caption
-	for {
-		_, after, ok := strings.Cut(rest, "{")
-		if !ok {
-			return nil
-		}
-		key, tail, closed := strings.Cut(after, "}")
-		if !closed {
-			return fmt.Errorf("%ssheet: caption has a { without its }: %s", prefix(s.Pos), quote(s.Caption))
-		}
-		if key != "name" && !has[key] {
-			return unknownTag(s, "caption", key, append([]string{"name"}, known...))
-		}
-		rest = tail
-	}
-}
-
-// anyFrame reports whether a frame answers every choice.
-func (e *Env) anyFrame(where []model.TagChoice) bool {
-	for _, f := range e.plan.Frames {
-		all := true
-		for _, w := range where {
-			all = all && answers(f, w)
-		}
-		if all {
-			return true
-		}
-	}
-	return false
-}
-
-func answers(f model.Frame, w model.TagChoice) bool {
-	for _, t := range f.Tags {
-		if t.Key != w.Key {
-			continue
-		}
-		for _, v := range w.Values {
-			if v == t.Value {
-				return true
-			}
-		}
-	}
-	return false
-}
-
-// defaultSheet is the sheet of a scene that asks for none: all frames, by the tags in which they differ, the first across, the
-// others down.
-func (e *Env) defaultSheet() {
-	var keys []string
-	first := map[string]model.Value{}
-	count := map[string]int{}
-	varies := map[string]bool{}
+// tagKeys lists the tags of all frames, as first seen.
+func (e *Env) tagKeys() []string {
+	var known []string
+	seen := map[string]bool{}
 	for _, f := range e.plan.Frames {
 		for _, t := range f.Tags {
-			v, seen := first[t.Key]
-			if !seen {
-				keys = append(keys, t.Key)
-				first[t.Key] = t.Value
-			} else if v != t.Value {
-				varies[t.Key] = true
+			if !seen[t.Key] {
+				seen[t.Key] = true
+				known = append(known, t.Key)
 			}
-			count[t.Key]++
 		}
 	}
-	s := model.Sheet{Title: titleOf(e.stem())}
-	for _, k := range keys {
+	return known
+}
+
+// checkSheet checks the tags that a sheet names; known are those of the frames.
+func (e *Env) checkSheet(s *model.Sheet, known []string) error {
+	check := func(what string, passes bool, key string, more ...string) error {
 		switch {
-		case !varies[k] && count[k] == len(e.plan.Frames):
-		case len(s.Columns) == 0:
-			s.Columns = []string{k}
-		default:
-			s.Rows = append(s.Rows, k)
+		case slices.Contains(known, key) || slices.Contains(more, key):
+			return nil
+		case passes && key == model.AxisPass && e.passes:
+			return nil
+		case passes && key == model.AxisPass:
+			return fmt.Errorf("%s names the passes, and no frame has any: ask for them in settings{ passes = … }", what)
+		case len(known) == 0:
+			return fmt.Errorf("%s names the tag %s, and no frame has tags", what, quote(key))
+		}
+		return fmt.Errorf("%s names a tag that no frame has, %s%s", what, quote(key), Hint(key, append(more, known...)))
+	}
+	for _, ax := range []struct {
+		name string
+		keys []string
+	}{{"rows", s.Rows}, {"columns", s.Columns}, {"pages", s.Pages}} {
+		for _, key := range ax.keys {
+			if err := check(ax.name, true, key); err != nil {
+				return err
+			}
 		}
 	}
-	if len(s.Columns) == 0 && len(e.plan.Frames) > 1 {
-		s.Caption = "{name}"
+	for _, w := range s.Where {
+		if err := check("where", false, w.Key); err != nil {
+			return err
+		}
 	}
-	s.Name = e.freeSheetName(e.stem())
-	e.plan.Sheets = []model.Sheet{s}
+	for _, o := range s.Order {
+		if err := check("order", true, o.Key); err != nil {
+			return err
+		}
+	}
+	for _, part := range s.CaptionParts() {
+		if strings.Contains(part.Text, "{") {
+			return fmt.Errorf("caption has a { without a name and its }: %s", quote(s.Caption))
+		}
+		if part.Key != "" {
+			if err := check("caption", true, part.Key, model.CaptionName); err != nil {
+				return err
+			}
+		}
+	}
+	return nil
+}
+
+// giveAxes lays a sheet by the tags in which its frames differ, the first across, the others down; in lines of per_line, all across.
+// Frames that these do not tell apart, or of which some lack one, stand under their names.
+func giveAxes(s *model.Sheet, frames []*model.Frame) {
+	var axes []string
+	for _, t := range frames[0].Tags {
+		varies := false
+		all := true
+		for _, f := range frames[1:] {
+			v, ok := f.Tag(t.Key)
+			varies = varies || v != t.Value
+			all = all && ok
+		}
+		if varies && all {
+			axes = append(axes, t.Key)
+		}
+	}
+	if !tellApart(axes, frames) {
+		return
+	}
+	if len(axes) < 2 || s.PerLine > 0 {
+		s.Columns = axes
+		return
+	}
+	s.Columns, s.Rows = axes[:1:1], axes[1:]
+}
+
+// tellApart reports whether no two frames have the same values of the tags.
+func tellApart(keys []string, frames []*model.Frame) bool {
+	met := map[string]bool{}
+	for _, f := range frames {
+		var place strings.Builder
+		for _, k := range keys {
+			v, _ := f.Tag(k)
+			fmt.Fprintf(&place, "%d %q ", v.Kind, v.String())
+		}
+		if met[place.String()] {
+			return false
+		}
+		met[place.String()] = true
+	}
+	return true
 }
 
 // titleOf makes a title of a file's name: "first_sheet" gives "First sheet".

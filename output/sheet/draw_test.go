@@ -281,7 +281,7 @@ func TestLayHandsErrorsOn(t *testing.T) {
 	}
 	s.Columns = []string{"glos"}
 	s.Pos = model.Pos{File: "bowls.lua", Line: 3}
-	if err := Lay(p, s, src, Options{}, nil); err == nil || !strings.HasPrefix(err.Error(), `bowls.lua:3: sheet "s": columns: `) {
+	if err := Lay(p, s, src, Options{}, nil); err == nil || !strings.HasPrefix(err.Error(), `bowls.lua:3: sheet "s": no frame has all the tags glaze and glos`) {
 		t.Errorf("got %v", err)
 	}
 	s.Columns, s.Paper = []string{"gloss"}, 9

@@ -89,7 +89,7 @@ func TestFairness(t *testing.T) {
 		if keys == nil {
 			keys = []string{"gloss"}
 		}
-		pv, err := check(p, &model.Sheet{Columns: keys})
+		pv, err := newPivot(p, &model.Sheet{Columns: keys})
 		if err != nil {
 			t.Fatalf("%s: %v", c.name, err)
 		}

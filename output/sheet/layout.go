@@ -11,8 +11,6 @@ import (
 const (
 	maxSide     = 12_000 // a page's sides
 	leastScaled = 240    // a tile's longer side, under which pages are split rather than tiles made smaller
-	minTileSide = 16     // of a sheet's own Tile
-	maxTileSide = 4_096
 	minModule   = 12
 	footRoom    = 8  // modules kept for the foot, enough for ten lines, when a table is cut
 	minMeasure  = 20 // modules: the narrowest column of tiles, so that title and foot have room
@@ -262,7 +260,7 @@ func (c *composer) tile(p part, g *grid, cell int, x, y float64) {
 	pl := p.table.cells[cell]
 	g.plate.tiles = append(g.plate.tiles, tileItem{image.Rectangle{at, at.Add(c.cell)}, pl})
 	if g.captionLead > 0 && pl.frame >= 0 {
-		text := captionOf(c.sheet.Caption, &c.plan.Frames[pl.frame], pl.pass, c.words)
+		text := captionOf(c.sheet.CaptionParts(), &c.plan.Frames[pl.frame], pl.pass, c.words)
 		g.put(c.set.fit(text, g.captionStyle, float64(c.cell.X)), g.left+x, y+float64(c.cell.Y)+math.Ceil(max(0.72*g.captionLead, mostAscent*g.captionStyle.size)))
 	}
 }

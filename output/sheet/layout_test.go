@@ -24,7 +24,7 @@ func someText() *rapid.Generator[string] {
 	)
 }
 
-// somePlan is a plan and a sheet of it that Check takes.
+// somePlan is a plan and a sheet of it that can be laid.
 func somePlan(t *rapid.T) (*model.Plan, model.Sheet) {
 	p := &model.Plan{Scene: someText().Draw(t, "scene")}
 	keys := rapid.SliceOfNDistinct(rapid.OneOf(rapid.StringMatching(`[a-z_]{1,20}`), rapid.Just("height_mm")).Filter(func(s string) bool { return s != model.AxisPass }), 1, 3, rapid.ID).Draw(t, "keys")

@@ -26,12 +26,16 @@ func (c *composer) turnTo(pg pagePlan) {
 
 // plates decides what stands on which page.
 func plates(p *model.Plan, s *model.Sheet, o Options) ([]pagePlan, *composer, error) {
-	pv, err := checked(p, s)
-	if err != nil {
-		return nil, nil, err
+	pv, err := newPivot(p, s)
+	if err == nil && int(s.Paper) >= len(grounds) {
+		err = fmt.Errorf("paper %d is not known", s.Paper)
 	}
-	if int(s.Paper) >= len(grounds) {
-		return nil, nil, fmt.Errorf("sheet %q: paper %d is not known", s.Name, s.Paper)
+	if err != nil {
+		at := ""
+		if s.Pos.File != "" {
+			at = fmt.Sprintf("%s:%d: ", s.Pos.File, s.Pos.Line)
+		}
+		return nil, nil, fmt.Errorf("%ssheet %q: %w", at, s.Name, err)
 	}
 	set, err := newSetter()
 	if err != nil {

@@ -42,13 +42,6 @@ func (p *pivot) keys() []string {
 // picturePass is how the picture itself reads on the pass axis.
 const picturePass = "picture"
 
-// passNames are the passes as they read on sheets and in Source calls.
-var passNames = [...]string{
-	model.PassDiffuse: "diffuse", model.PassSpecular: "specular", model.PassAmbient: "ambient",
-	model.PassEmission: "emission", model.PassDepth: "depth", model.PassNormal: "normal",
-	model.PassSamples: "samples", model.PassNoise: "noise",
-}
-
 // entry is a frame (or one of its passes) with its values along the three axes.
 type entry struct {
 	place
@@ -109,7 +102,7 @@ func passesOf(f *model.Frame, keys []string) []string {
 	passes := []string{""}
 	if slices.Contains(keys, model.AxisPass) {
 		for _, p := range f.Settings.Passes {
-			passes = append(passes, passNames[p])
+			passes = append(passes, p.String())
 		}
 	}
 	return passes
@@ -265,7 +258,10 @@ func nothingToShow(p *model.Plan, s *model.Sheet, pv *pivot, chosen int) error {
 		}
 		return fmt.Errorf("where admits none of the %d frames: no frame has the chosen %s", len(p.Frames), list(keys, "and"))
 	}
-	return fmt.Errorf("none of the %d frames has all the tags %s", chosen, list(pv.keys(), "and"))
+	if keys := pv.keys(); len(keys) > 1 {
+		return fmt.Errorf("no frame has all the tags %s", list(keys, "and"))
+	}
+	return fmt.Errorf("no frame has the tag %s", list(pv.keys(), "and"))
 }
 
 // list joins words as a sentence does: "a, b and c".

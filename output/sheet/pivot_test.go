@@ -120,7 +120,7 @@ func TestPivot(t *testing.T) {
 			Order: []model.TagOrder{{Key: model.AxisPass, Values: []model.Value{txt("depth")}}}},
 			" depth picture diffuse; slate: a(depth) a a(diffuse); celadon: - b b(diffuse)"},
 	} {
-		pv, err := check(c.plan, &c.sheet)
+		pv, err := newPivot(c.plan, &c.sheet)
 		if err != nil {
 			t.Errorf("%s: %v", c.name, err)
 			continue
@@ -130,13 +130,14 @@ func TestPivot(t *testing.T) {
 			t.Errorf("%s:\ngot  %q\nwant %q", c.name, got, c.want)
 		}
 	}
-	pv, err := check(bowls(), &model.Sheet{Columns: []string{"gloss", "glaze"}})
+	pv, err := newPivot(bowls(), &model.Sheet{Columns: []string{"gloss", "glaze"}})
 	if err != nil || pv.leftOut != 1 {
 		t.Errorf("left out %d frames, want 1 (%v)", pv.leftOut, err)
 	}
 }
 
-func TestCheckRefuses(t *testing.T) {
+// TestRefused: a sheet that shows nothing, or two frames in one place.
+func TestRefused(t *testing.T) {
 	twins := bowls()
 	twins.Frames = append(twins.Frames, frame("again", "gloss", 4, "glaze", "slate"))
 	for _, c := range []struct {
@@ -144,30 +145,20 @@ func TestCheckRefuses(t *testing.T) {
 		sheet model.Sheet
 		want  string
 	}{
-		{bowls(), model.Sheet{Columns: []string{"glos"}}, `columns: no frame has a tag "glos"; did you mean "gloss"?`},
-		{bowls(), model.Sheet{Rows: []string{"temperature"}}, `rows: no frame has a tag "temperature": the tags are gloss, glaze and kind`},
-		{bowls(), model.Sheet{Pages: []string{"gloss"}, Rows: []string{"gloss"}}, `pages: tag "gloss" stands in rows already`},
-		{bowls(), model.Sheet{Rows: []string{"glaze", "glaze"}}, `rows: tag "glaze" stands in rows already`},
 		{bowls(), model.Sheet{Columns: []string{"gloss"}}, `frames "slate-16" and "celadon-16" stand in one place (same gloss): tag glaze tells them apart`},
 		{twins, model.Sheet{Rows: []string{"glaze"}, Columns: []string{"gloss"}}, `frames "slate-4" and "again" stand in one place (same glaze and gloss) and have the same tags`},
 		{bowls(), model.Sheet{Where: []model.TagChoice{{Key: "gloss", Values: []model.Value{txt("4")}}}}, "where admits none of the 6 frames: no frame has the chosen gloss"},
-		{bowls(), model.Sheet{Where: []model.TagChoice{{Key: "glase"}}}, `where: no frame has a tag "glase"; did you mean "glaze"?`},
-		{bowls(), model.Sheet{Order: []model.TagOrder{{Key: "x"}}}, `order: no frame has a tag "x"`},
-		{bowls(), model.Sheet{Caption: "{gloss} {nmae}"}, `caption: no frame has a tag "nmae"`},
-		{bowls(), model.Sheet{Columns: []string{"gloss"}, Rows: []string{"kind"}}, "none of the 6 frames has all the tags kind and gloss"},
-		{bowls(), model.Sheet{PerLine: -1}, "per_line: a number of tiles of at least 1"},
-		{bowls(), model.Sheet{PerLine: 3, Columns: []string{"gloss"}, Rows: []string{"glaze"}}, "per_line: a sheet with rows and columns"},
-		{bowls(), model.Sheet{Tile: [2]int{8, 100}}, "tile: 16 to 4096 pixels a side are accepted, got 8 × 100"},
+		{bowls(), model.Sheet{Columns: []string{"gloss"}, Rows: []string{"kind"}}, "no frame has all the tags kind and gloss"},
 		{&model.Plan{}, model.Sheet{}, "the scene has no frames"},
-		{&model.Plan{Frames: []model.Frame{frame("a")}}, model.Sheet{Rows: []string{"gloss"}}, "the frames have no tags"},
+		{&model.Plan{Frames: []model.Frame{frame("a")}}, model.Sheet{Rows: []string{"gloss"}}, "no frame has the tag gloss"},
 	} {
 		c.sheet.Name, c.sheet.Pos = "sheet-1", model.Pos{File: "bowls.lua", Line: 9}
-		err := Check(c.plan, c.sheet)
+		_, err := Names(c.plan, c.sheet, Options{})
 		if err == nil || !strings.HasPrefix(err.Error(), `bowls.lua:9: sheet "sheet-1": `) || !strings.Contains(err.Error(), c.want) {
 			t.Errorf("got %v\nwant an error with %q", err, c.want)
 		}
 	}
-	if err := Check(bowls(), model.Sheet{Rows: []string{"glaze"}, Columns: []string{"gloss"}, Caption: "{name}, {gloss} {pass}"}); err != nil {
+	if _, err := Names(bowls(), model.Sheet{Rows: []string{"glaze"}, Columns: []string{"gloss"}, Caption: "{name}, {gloss} {pass}"}, Options{}); err != nil {
 		t.Error(err)
 	}
 }
@@ -197,7 +188,7 @@ func TestPivotPlacesEachFrameOnce(t *testing.T) {
 		i := rapid.IntRange(0, 3).Draw(t, "rows end")
 		j := rapid.IntRange(i, 3).Draw(t, "columns end")
 		s := model.Sheet{Rows: order[:i], Columns: order[i:j], Pages: order[j:]}
-		pv, err := check(p, &s)
+		pv, err := newPivot(p, &s)
 		if err != nil {
 			t.Fatal(err) // frames differ in the three tags, and all three are axes
 		}

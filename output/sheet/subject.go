@@ -12,7 +12,7 @@ import (
 // wordings finds how the values of each tag that the sheet writes are written.
 func wordings(p *model.Plan, s *model.Sheet, pv *pivot) map[string]wording {
 	words := map[string]wording{}
-	for _, key := range append(pv.keys(), captionKeys(s.Caption)...) {
+	for _, key := range append(pv.keys(), captionKeys(s)...) {
 		if _, ok := words[key]; !ok {
 			words[key] = wordingOf(key, valuesOf(p, pv.frames, key))
 		}

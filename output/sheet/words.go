@@ -152,52 +152,30 @@ func wholePart(text string) string {
 	return text
 }
 
-// captionName is the place of the frame's own name in a caption.
-const captionName = "name"
-
 // captionKeys lists what a caption's braces name.
-func captionKeys(template string) []string {
+func captionKeys(s *model.Sheet) []string {
 	var keys []string
-	eachPart(template, func(text, key string) {
-		if key != "" {
-			keys = append(keys, key)
+	for _, p := range s.CaptionParts() {
+		if p.Key != "" {
+			keys = append(keys, p.Key)
 		}
-	})
+	}
 	return keys
 }
 
 // captionOf fills a caption for a frame. A tag that the frame lacks leaves nothing.
-func captionOf(template string, f *model.Frame, pass string, words map[string]wording) string {
+func captionOf(parts []model.CaptionPart, f *model.Frame, pass string, words map[string]wording) string {
 	var b strings.Builder
-	eachPart(template, func(text, key string) {
-		b.WriteString(text)
-		switch v, ok := valueOf(f, pass, key); {
-		case key == captionName:
+	for _, p := range parts {
+		b.WriteString(p.Text)
+		switch v, ok := valueOf(f, pass, p.Key); {
+		case p.Key == model.CaptionName:
 			b.WriteString(f.Name)
-		case key != "" && ok:
-			b.WriteString(words[key].text(v))
+		case p.Key != "" && ok:
+			b.WriteString(words[p.Key].text(v))
 		}
-	})
-	return b.String()
-}
-
-// eachPart cuts a template into text and, after it, the key in braces or "". A brace without its partner is text.
-func eachPart(template string, part func(text, key string)) {
-	for template != "" {
-		open := strings.IndexByte(template, '{')
-		if open < 0 {
-			part(template, "")
-			return
-		}
-		length := strings.IndexByte(template[open:], '}')
-		if length < 2 {
-			part(template[:open+1], "")
-			template = template[open+1:]
-			continue
-		}
-		part(template[:open], template[open+1:open+length])
-		template = template[open+length+1:]
 	}
+	return b.String()
 }
 
 // span says what of a tag a sheet shows: "gloss 4 to 256" for numbers, the tag's name alone for words.

@@ -103,23 +103,8 @@ func TestCaption(t *testing.T) {
 		"{} {glaze":                  "{} {glaze",
 		"{pass}":                     "depth",
 	} {
-		if got := captionOf(template, &f, "depth", words); got != want {
+		if got := captionOf((&model.Sheet{Caption: template}).CaptionParts(), &f, "depth", words); got != want {
 			t.Errorf("%q gave %q, want %q", template, got, want)
-		}
-	}
-}
-
-func TestEditDistance(t *testing.T) {
-	for _, c := range []struct {
-		a, b   string
-		want   int
-		source string
-	}{
-		{"", "abc", 3, "three letters put in"}, {"kitten", "sitting", 3, "the usual example"}, {"glaze", "glaze", 0, "the same"},
-		{"glaze", "gaze", 1, "one taken out"}, {"é", "e", 1, "letters, not bytes"},
-	} {
-		if got := editDistance(c.a, c.b); got != c.want {
-			t.Errorf("%q to %q: got %d, want %d (%s)", c.a, c.b, got, c.want, c.source)
 		}
 	}
 }
@@ -129,7 +114,7 @@ func FuzzCaption(f *testing.F) {
 	f.Add("}{{}{gloss")
 	fr := frame("bowl", "gloss", 16)
 	f.Fuzz(func(t *testing.T, template string) {
-		got := captionOf(template, &fr, "", map[string]wording{"gloss": {digits: 4}})
+		got := captionOf((&model.Sheet{Caption: template}).CaptionParts(), &fr, "", map[string]wording{"gloss": {digits: 4}})
 		if !strings.Contains(template, "{") && got != template {
 			t.Errorf("%q became %q", template, got)
 		}
