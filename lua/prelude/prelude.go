@@ -10,6 +10,9 @@ import (
 //go:embed *.lua
 var modules embed.FS
 
+// Files are the modules, in one folder.
+func Files() fs.FS { return modules }
+
 // Source returns the text of a module; ok is false where the program has none of that name.
 func Source(name string) (text string, ok bool) {
 	b, err := modules.ReadFile(name + ".lua")

@@ -10,24 +10,30 @@ import (
 	"github.com/spf13/cobra"
 
 	"lampbook/lua/api"
+	"lampbook/lua/prelude"
 	"lampbook/output/encode"
 )
 
 func newAPI() *cobra.Command {
 	return &cobra.Command{
 		Use:   "api DIR",
-		Short: "Writes the editor annotations of the scene language",
+		Short: "Writes the editor annotations of the scene language and its modules",
 		Long: `Writes the annotations of the scene language, as Lua files that an editor's language server
-reads: every call with its keys, their types, units, ranges and defaults. DIR is made where
-it is missing; files of the same names in it are replaced.`,
+reads: every call with its keys, their types, units, ranges and defaults; and the modules that
+scenes require, as they are inside the program: forms, keys, rigs, stands, surfaces. DIR is
+made where it is missing; files of the same names in it are replaced.`,
 		Example: "  lampbook api annotations",
 		Args:    oneArgument("folder"),
 		RunE: func(cmd *cobra.Command, args []string) error {
-			written, _, err := copyOut(api.Files(), args[0], replaceAll)
+			calls, _, err := copyOut(api.Files(), args[0], replaceAll)
 			if err != nil {
 				return failed(err)
 			}
-			return printLine(cmd.OutOrStdout(), "%s in %s", count(len(written), "file"), args[0])
+			modules, _, err := copyOut(prelude.Files(), args[0], replaceAll)
+			if err != nil {
+				return failed(err)
+			}
+			return printLine(cmd.OutOrStdout(), "%s in %s", count(len(calls)+len(modules), "file"), args[0])
 		},
 	}
 }

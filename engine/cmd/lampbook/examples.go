@@ -1,8 +1,7 @@
 package main
 
 import (
-	"fmt"
-	"path/filepath"
+	"strings"
 
 	"github.com/spf13/cobra"
 
@@ -22,16 +21,10 @@ missing. A file that is there already and differs is left alone, for it may be y
 			if err != nil {
 				return failed(err)
 			}
-			for _, name := range kept {
-				fmt.Fprintf(cmd.ErrOrStderr(), "%s: is there already and differs from the example: left alone\n", filepath.Join(args[0], filepath.FromSlash(name)))
+			if len(kept) == 0 {
+				return printLine(cmd.OutOrStdout(), "%s in %s", count(len(written), "file"), args[0])
 			}
-			if err := printLine(cmd.OutOrStdout(), "%s in %s", count(len(written), "file"), args[0]); err != nil {
-				return err
-			}
-			if len(kept) > 0 {
-				return fault{status: statusFailed}
-			}
-			return nil
+			return printLine(cmd.OutOrStdout(), "%s: %d written, %d of yours left alone: %s", args[0], len(written), len(kept), strings.Join(kept, ", "))
 		},
 	}
 }

@@ -35,8 +35,13 @@ func wrongf(format string, args ...any) error {
 	return fault{status: statusWrong, err: fmt.Errorf("lampbook: "+format, args...)}
 }
 
-// failed is something that went wrong in the doing.
-func failed(err error) error { return fault{status: statusFailed, err: err} }
+// failed is something that went wrong in the doing, unless the error says better itself.
+func failed(err error) error {
+	if f, ok := err.(fault); ok {
+		return f
+	}
+	return fault{status: statusFailed, err: err}
+}
 
 // told marks an error as told in JSON.
 func told(err error) error {

@@ -2,6 +2,7 @@ package main
 
 import (
 	"errors"
+	"fmt"
 	"io/fs"
 	"os"
 	"path/filepath"
@@ -48,11 +49,27 @@ func (f *runFolder) path(name string) string { return filepath.Join(f.dir, filep
 // close lets other runs in.
 func (f *runFolder) close() { f.lock.release() }
 
-// makeFolder makes a folder with those above it.
+// makeFolder makes a folder with those above it. Where a file stands in the way, the user has named the wrong place.
 func makeFolder(dir string) error {
 	err := os.MkdirAll(dir, 0o777)
-	if info, statErr := os.Stat(dir); statErr == nil && !info.IsDir() {
-		return &fs.PathError{Op: "mkdir", Path: dir, Err: errors.New("is a file, not a folder")}
+	if err == nil {
+		return nil
+	}
+	for at := filepath.Clean(dir); ; at = filepath.Dir(at) {
+		if info, statErr := os.Stat(at); statErr == nil && !info.IsDir() {
+			return wrongf("%s: is a file, not a folder", at)
+		} else if statErr == nil || at == filepath.Dir(at) {
+			break
+		}
+	}
+	return failed(fmt.Errorf("lampbook: %s: no folder can be made here: %w", dir, plainCause(err)))
+}
+
+// plainCause takes the operation and the path off an error of package os.
+func plainCause(err error) error {
+	var e *fs.PathError
+	if errors.As(err, &e) {
+		return e.Err
 	}
 	return err
 }

@@ -23,7 +23,7 @@ func lockFolder(dir string) (*folderLock, error) {
 	for {
 		file, err := os.OpenFile(path, os.O_RDWR|os.O_CREATE, 0o666)
 		if err != nil {
-			return nil, err
+			return nil, fmt.Errorf("lampbook: %s: no file can be written here: %w", dir, plainCause(err))
 		}
 		if err := tryLock(file); err != nil {
 			holder, _ := os.ReadFile(path)

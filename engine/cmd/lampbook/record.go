@@ -1,6 +1,7 @@
 package main
 
 import (
+	"cmp"
 	"encoding/json"
 	"io"
 	"os"
@@ -41,12 +42,30 @@ func writeRecord(j *job, w *pictures, sheets []report.SheetRecord, r *request, s
 	return encode.WriteFile(w.folder.path(tableName), func(to io.Writer) error { return report.WriteFrames(to, record) })
 }
 
-// version is the program's version as the Go tools built it in.
+// version is the program's version as the Go tools built it in: the module's, and the revision where it is not part of that.
 func version() string {
-	if info, ok := debug.ReadBuildInfo(); ok && info.Main.Version != "" {
-		return info.Main.Version
+	info, ok := debug.ReadBuildInfo()
+	if !ok {
+		return "unknown"
 	}
-	return "unknown"
+	return versionOf(info)
+}
+
+func versionOf(info *debug.BuildInfo) string {
+	text := cmp.Or(info.Main.Version, "unknown")
+	values := map[string]string{}
+	for _, s := range info.Settings {
+		values[s.Key] = s.Value
+	}
+	const enough = 12 // digits of a revision, as in the module's version
+	revision := values["vcs.revision"]
+	if revision = revision[:min(len(revision), enough)]; revision == "" || strings.Contains(text, revision) {
+		return text
+	}
+	if values["vcs.modified"] == "true" {
+		revision += ", changed since"
+	}
+	return text + " (" + revision + ")"
 }
 
 // maxManifest is the size of the largest manifest of an earlier run that is read: that of a plan with the most frames.

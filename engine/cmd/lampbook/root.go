@@ -3,10 +3,13 @@ package main
 import (
 	"errors"
 	"fmt"
+	"path/filepath"
 	"strings"
 
 	"github.com/spf13/cobra"
 	"github.com/spf13/pflag"
+
+	"lampbook/engine/model"
 )
 
 // newRoot makes the command tree.
@@ -25,10 +28,19 @@ becomes a picture, and labelled contact sheets collect them.`,
 			if len(args) == 0 {
 				return nil
 			}
+			if filepath.Ext(args[0]) == ".lua" {
+				return wrongf("unknown command %q; did you mean lampbook render %s?", args[0], args[0])
+			}
 			return wrongf("unknown command %q%s; see lampbook --help", args[0], didYouMean(args[0], commandNames(cmd)))
 		},
-		RunE: func(cmd *cobra.Command, _ []string) error { return cmd.Help() },
+		RunE: func(cmd *cobra.Command, _ []string) error {
+			if asked, _ := cmd.Flags().GetBool("version"); asked {
+				return printLine(cmd.OutOrStdout(), "lampbook %s, picture version %d", version(), model.PictureVersion)
+			}
+			return cmd.Help()
+		},
 	}
+	root.Flags().Bool("version", false, "says which version this is")
 	root.AddCommand(newRender(), newPlan(), newCheck(), newAPI(), newExamples())
 	root.SetHelpFunc(func(cmd *cobra.Command, _ []string) { fmt.Fprint(cmd.OutOrStdout(), helpText(cmd)) })
 	root.SetUsageFunc(func(cmd *cobra.Command) error {
@@ -43,11 +55,51 @@ becomes a picture, and labelled contact sheets collect them.`,
 		c.DisableFlagsInUseLine = true // each says itself where its options go
 		c.Flags().BoolP("help", "h", false, "says this")
 		if c.Name() == "completion" {
-			c.Short = "Prints a script that completes options and names in your shell"
-			c.Long = "Prints a script that lets your shell complete commands, options and file names.\nThe help of each shell's command says where the script goes."
+			wordCompletion(c)
 		}
 	}
 	return root
+}
+
+// wordCompletion gives the command that prints completion scripts, and those below it, our words.
+func wordCompletion(c *cobra.Command) {
+	c.Short = "Prints a script that completes options and names in your shell"
+	c.Long = "Prints a script that lets your shell complete commands, options and file names.\nThe help of each shell's command says where the script goes."
+	c.Args = cobra.ArbitraryArgs
+	c.RunE = func(cmd *cobra.Command, args []string) error {
+		if len(args) == 0 {
+			return cmd.Help()
+		}
+		shells := commandNames(cmd)
+		return wrongf("completion: unknown shell %q%s%s", args[0], didYouMean(args[0], shells), accepted("shells", shells))
+	}
+	where := map[string]string{
+		"bash": `For this session:
+
+  source <(lampbook completion bash)
+
+For every later one, where the package bash-completion is installed:
+
+  lampbook completion bash > ~/.local/share/bash-completion/completions/lampbook`,
+		"zsh": `For every later session, if the folder is in fpath and compinit runs after:
+
+  lampbook completion zsh > ~/.zfunc/_lampbook`,
+		"fish": `For every later session:
+
+  lampbook completion fish > ~/.config/fish/completions/lampbook.fish`,
+		"powershell": `For this session; in the profile, for every later one:
+
+  lampbook completion powershell | Out-String | Invoke-Expression`,
+	}
+	for _, shell := range c.Commands() {
+		shell.Short = "Prints the script for " + shell.Name()
+		shell.Long = shell.Short + ".\n\n" + where[shell.Name()]
+		shell.DisableFlagsInUseLine = true
+		shell.Flags().BoolP("help", "h", false, "says this")
+		if f := shell.Flags().Lookup("no-descriptions"); f != nil {
+			f.Usage = "completes without saying what things are"
+		}
+	}
 }
 
 // newHelp makes "lampbook help COMMAND", which says what "lampbook COMMAND --help" does.
@@ -120,6 +172,9 @@ func helpText(cmd *cobra.Command) string {
 		say("\n%s COMMAND --help says more about one of them.\n", cmd.CommandPath())
 	} else {
 		say("%s\n", cmd.UseLine())
+	}
+	if !cmd.HasParent() {
+		say("%s --version says which version this is.\n", cmd.CommandPath())
 	}
 	if options := cmd.LocalFlags().FlagUsagesWrapped(100); options != "" && !cmd.HasAvailableSubCommands() {
 		say("\n%s", options)
