@@ -4,6 +4,7 @@ package bvh
 
 import (
 	"testing"
+	"unsafe"
 
 	"lampbook/engine/kernel/geom"
 
@@ -121,5 +122,56 @@ func TestBundleLoopsAgree(t *testing.T) {
 	})
 	if enclosedSome < 20 {
 		t.Errorf("only %d shafts", enclosedSome)
+	}
+}
+
+// The assembly knows the structs by offsets; those must be the compiler's.
+func TestLayouts(t *testing.T) {
+	var r wideRay
+	var l lanes
+	var g handGroup
+	var h handTriangle
+	var s shaft
+	var b bundleBounds
+	for _, tt := range []struct {
+		field     string
+		got, want uintptr
+	}{
+		{"wideRay.slope", unsafe.Offsetof(r.slope), 64}, {"wideRay.signs", unsafe.Offsetof(r.signs), 92},
+		{"wideRay.tMax", unsafe.Offsetof(r.tMax), 100}, {"wideRay", unsafe.Sizeof(r), 128},
+		{"lanes.vs", unsafe.Offsetof(l.vs), 96}, {"lanes.edges", unsafe.Offsetof(l.edges), 320}, {"lanes.nodes", unsafe.Offsetof(l.nodes), 416},
+		{"lanes.best", unsafe.Offsetof(l.best), 440}, {"lanes.found", unsafe.Offsetof(l.found), 456}, {"lanes.stack", unsafe.Offsetof(l.stack), 512},
+		{"handGroup.near", unsafe.Offsetof(g.near), 192}, {"handGroup.tMin", unsafe.Offsetof(g.tMin), 480}, {"handGroup.tie", unsafe.Offsetof(g.tie), 544},
+		{"handGroup.found", unsafe.Offsetof(g.found), 640}, {"handGroup", unsafe.Sizeof(g), 672},
+		{"handTriangle.lo", unsafe.Offsetof(h.lo), 36}, {"handTriangle.index", unsafe.Offsetof(h.index), 60}, {"handTriangle", unsafe.Sizeof(h), 64},
+		{"wideNode.child", unsafe.Offsetof(wideNode{}.child), 192}, {"wideNode", unsafe.Sizeof(wideNode{}), 256},
+		{"block.index", unsafe.Offsetof(block{}.index), 288}, {"block", unsafe.Sizeof(block{}), 320},
+		{"shaft.z0", unsafe.Offsetof(s.z0), 24}, {"shaft.slope", unsafe.Offsetof(s.slope), 48},
+		{"bundleBounds.anyNegative", unsafe.Offsetof(b.anyNegative), 64}, {"bundleBounds.some", unsafe.Offsetof(b.some), 76},
+		{"ref.negHi", unsafe.Offsetof(ref{}.negHi), 16}, {"ref", unsafe.Sizeof(ref{}), 32}, {"binTable.count", unsafe.Offsetof(binTable{}.count), 1536},
+		{"Hit.Placement", unsafe.Offsetof(Hit{}.Placement), 16}, {"Hit", unsafe.Sizeof(Hit{}), 20}, {"Ray", unsafe.Sizeof(geom.Ray{}), 32},
+	} {
+		if tt.got != tt.want {
+			t.Errorf("%s: %d, the assembly says %d", tt.field, tt.got, tt.want)
+		}
+	}
+}
+
+// A pixel's rays at a small mesh must take the way of eight at a time, or TestWalksAgree does not test it.
+func TestHandfulRuns(t *testing.T) {
+	if !haveWide {
+		t.Skip("this machine has no vector walk, or LAMPBOOK_WALK=portable")
+	}
+	s := one(true, bowl(500))
+	var w Walker
+	hits := make([]Hit, 64)
+	ran := false
+	rays := pixelRays(s.placed[0].tree.Bounds(), 24, 64)
+	for i := 0; i < len(rays); i += 64 {
+		s.Closest(&w, SeenByCamera, rays[i:i+64], hits)
+		ran = ran || w.wide.hand.groups[0].found != [8]uint32{}
+	}
+	if !ran {
+		t.Error("no bundle of 576 was tested against a handful of triangles")
 	}
 }
