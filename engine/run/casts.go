@@ -2,6 +2,7 @@ package run
 
 import (
 	"cmp"
+	"fmt"
 
 	"lampbook/engine/model"
 	"lampbook/engine/render"
@@ -47,6 +48,29 @@ func Casts(p *model.Plan, o Options) []render.Cast {
 		casts[i] = render.Cast{Plan: p, Frames: g.frames}
 	}
 	return casts
+}
+
+// Refuse gives every frame of the plan whose picture alone would not fit into memory bytes a Failure that names what it needs. A run
+// of the plan then holds no more pictures than memory allows.
+func Refuse(p *model.Plan, memory int64) {
+	for i := range p.Frames {
+		f := &p.Frames[i]
+		if need := PictureBytes(f.Settings); f.Failure == "" && need > memory {
+			f.Failure = fmt.Sprintf("the picture of %d × %d pixels needs %s of memory, and %s are allowed: make it smaller, or allow more by --memory",
+				f.Settings.Width, f.Settings.Height, mebibytes(need), mebibytes(memory))
+		}
+	}
+}
+
+func mebibytes(n int64) string { return fmt.Sprintf("%.4g MiB", float64(n)/(1<<20)) }
+
+// castBytes is what the finished pictures of a cast hold.
+func castBytes(c render.Cast) int64 {
+	sum := int64(0)
+	for _, i := range c.Frames {
+		sum += PictureBytes(c.Plan.Frames[i].Settings)
+	}
+	return sum
 }
 
 // PictureBytes returns what one finished frame with these settings holds in memory: the planes of its linear picture, the passes

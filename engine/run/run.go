@@ -1,6 +1,7 @@
 package run
 
 import (
+	"cmp"
 	"context"
 	"errors"
 	"fmt"
@@ -18,7 +19,7 @@ import (
 type Options struct {
 	Threads int          // goroutines that cast and that write, [1, 1024]; 0 means one for each core
 	Alone   bool         // cast every frame by itself; the pictures are the same, to the byte
-	Memory  int64        // bytes of finished pictures held at a time, >= 0; 0 means DefaultMemory. One frame may exceed it
+	Memory  int64        // bytes of finished pictures held at a time, >= 0; 0 means DefaultMemory. A frame that exceeds it is held alone; see Refuse
 	Events  chan<- Event // news; nil for none. Sends wait for the reader. Run does not close it
 }
 
@@ -64,7 +65,8 @@ func Run(ctx context.Context, eng Engine, p *model.Plan, o Options, sink Sink) (
 
 	var rays atomic.Int64
 	d.deliver(failedInPlan(p))
-	parts := make(chan []Finished) // unbuffered: one part is rendered while another is written
+	parts := make(chan []Finished)  // unbuffered: one part is rendered while another is written
+	taken := make(chan struct{}, 1) // one entry when the part at hand is written
 	written := make(chan struct{})
 	go func() {
 		defer close(written)
@@ -75,10 +77,21 @@ func Run(ctx context.Context, eng Engine, p *model.Plan, o Options, sink Sink) (
 			if d.err != nil {
 				stop(d.err)
 			}
+			taken <- struct{}{}
 		}
 	}()
 	if d.err == nil {
+		held, writing := int64(0), false // bytes of the part that is being written
+		release := func() {
+			if writing {
+				<-taken
+			}
+			held, writing = 0, false
+		}
 		for i, c := range Casts(p, o) {
+			if castBytes(c)+held > cmp.Or(o.Memory, DefaultMemory) {
+				release()
+			}
 			if ctx.Err() != nil {
 				break
 			}
@@ -90,7 +103,9 @@ func Run(ctx context.Context, eng Engine, p *model.Plan, o Options, sink Sink) (
 			if !ok {
 				break
 			}
+			release()
 			parts <- part
+			held, writing = castBytes(c), true
 		}
 	}
 	close(parts)

@@ -4,8 +4,10 @@ import (
 	"context"
 	"errors"
 	"fmt"
+	"runtime"
 	"slices"
 	"sync"
+	"sync/atomic"
 	"syscall"
 	"testing"
 
@@ -311,6 +313,57 @@ func TestCancelAfterTheLastFrameIsNoStop(t *testing.T) {
 	sum, err := Run(ctx, &scripted{}, planOf(0, 1), Options{Threads: 1}, got.sink)
 	if err != nil || sum.Done != 2 {
 		t.Errorf("summary %+v, error %v; want 2 done and no error", sum, err)
+	}
+}
+
+// TestMemoryHolds: where two parts do not fit into the memory together, the next is begun after the one before is written; where they do,
+// while it is.
+func TestMemoryHolds(t *testing.T) {
+	p := planOf(0, 1, 2, 3) // of 2048 bytes each
+	var written atomic.Int64
+	eng := &scripted{before: func(_ context.Context, c render.Cast) error {
+		if n := written.Load(); n < int64(c.Frames[0]) {
+			t.Errorf("frame %d is begun when %d are written", c.Frames[0], n)
+		}
+		return nil
+	}}
+	slow := collector{fails: func(Finished) error {
+		for range 10_000 {
+			runtime.Gosched() // lets the next cast begin, if nothing holds it
+		}
+		written.Add(1)
+		return nil
+	}}
+	if sum, err := Run(t.Context(), eng, p, Options{Memory: 4095}, slow.sink); err != nil || sum.Done != 4 {
+		t.Errorf("summary %+v, error %v", sum, err)
+	}
+	begun := make(chan struct{}, 4)
+	eng = &scripted{before: func(context.Context, render.Cast) error { begun <- struct{}{}; return nil }}
+	waits := collector{fails: func(f Finished) error {
+		<-begun // its own
+		if f.Frame == 0 {
+			<-begun // and the next one's
+			begun <- struct{}{}
+		}
+		return nil
+	}}
+	if sum, err := Run(t.Context(), eng, p, Options{Memory: 4096}, waits.sink); err != nil || sum.Done != 4 {
+		t.Errorf("summary %+v, error %v", sum, err)
+	}
+}
+
+func TestRefuse(t *testing.T) {
+	p := planOf(0, 1, 2)
+	p.Frames[1].Settings.Width, p.Frames[1].Settings.Height = 1024, 1024
+	p.Frames[2].Failure = "broken"
+	Refuse(p, 32<<20)
+	if got := p.Frames[1].Failure; got != "" {
+		t.Errorf("a picture of 32 MiB is refused 32 MiB: %s", got)
+	}
+	Refuse(p, 32<<20-1)
+	const want = "the picture of 1024 × 1024 pixels needs 32 MiB of memory, and 32 MiB are allowed: make it smaller, or allow more by --memory"
+	if p.Frames[0].Failure != "" || p.Frames[1].Failure != want || p.Frames[2].Failure != "broken" {
+		t.Errorf("failures %q, %q, %q; want %q for the second alone", p.Frames[0].Failure, p.Frames[1].Failure, p.Frames[2].Failure, want)
 	}
 }
 
