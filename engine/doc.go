@@ -23,7 +23,7 @@
 //	pixmap/           images as named float32 planes
 //	render/           one cast: hits and visibilities once, every look shaded from them
 //	run/              many frames: grouped into casts, rendered, handed to a sink
-//	cmd/lampbook/     flags to options, one file per subcommand, no logic
+//	cmd/lampbook/     options to calls, one file a subcommand; the files of a run, and what it shows
 //
-// Start at model.Plan, then render.Render. Where a change goes: DEVELOPERS.md.
+// Start at model.Plan, then render.Engine.Render. Where a change goes: DEVELOPERS.md.
 package engine

@@ -5,6 +5,7 @@
 // pixel's rays, light.go its shadow rays, film.go sums a look's light and develops it. A look's pixels do not depend on the other looks
 // of its cast, on threads or on tile order.
 //
-// An Engine may be shared; it guards what it keeps. This package and run are the only ones that start goroutines.
+// An Engine may be shared; it guards what it keeps. Goroutines that compute are started here and in run alone; the command has two
+// more, one that waits for signals and one that shows progress.
 // May import: model, mesh, aim, pixmap and the kernels. Start at Engine.Render.
 package render
