@@ -184,25 +184,50 @@ func volume(m *mesh.Mesh) float64 {
 	return sum
 }
 
-// TestCoveIsSmooth walks up the cove: its normals turn from up to forward without a step, and match its faces.
-func TestCoveIsSmooth(t *testing.T) {
-	p, library, err := evaluate(t, `frame{ name = "cove", things = { stands.cove{ radius = 0.1 } } }`)
-	if err != nil {
-		t.Fatal(err)
-	}
-	m, err := library.Get(p.Meshes[p.Frames[0].Things[0].Mesh])
-	if err != nil {
-		t.Fatal(err)
-	}
-	for i := 2; i < len(m.Normals); i += 2 {
-		if cos := m.Normals[i].Wide().Dot(m.Normals[i-2].Wide()); cos < math.Cos(2*math.Pi/180) {
-			t.Errorf("normals %d and %d are %.1f° apart", i-2, i, math.Acos(cos)*180/math.Pi)
+// TestCove holds coves to their form (source: floor, quarter of a cylinder, wall, in closed form): each point lies on it with its true
+// normal, each face looks into the cove, and no triangle is a sliver.
+func TestCove(t *testing.T) {
+	for _, test := range []struct {
+		call           string
+		distance, bend float64 // metres
+	}{
+		{"stands.cove()", 0.9, 0.6},
+		{"stands.cove{ radius = 2, distance = 12 }", 12, 12},
+		{"stands.cove{ width = 1.3, front = 0.2, bend = 0.45, height = 1 }", 0.9, 0.45},
+	} {
+		p, library, err := evaluate(t, `frame{ name = "cove", things = { `+test.call+` } }`)
+		if err != nil {
+			t.Fatal(err)
 		}
-	}
-	for _, tri := range m.Triangles {
-		a, b, c := m.Positions[tri[0]].Wide(), m.Positions[tri[1]].Wide(), m.Positions[tri[2]].Wide()
-		if face := b.Sub(a).Cross(c.Sub(a)).Unit(); face.Dot(m.Normals[tri[0]].Wide()) < 0.99 {
-			t.Errorf("triangle %v faces %v, its normal is %v", tri, face, m.Normals[tri[0]])
+		m, err := library.Get(p.Meshes[p.Frames[0].Things[0].Mesh])
+		if err != nil {
+			t.Fatal(err)
+		}
+		close := func(a, b float64) bool { return math.Abs(a-b) <= 2e-5*test.distance }
+		for i, position := range m.Positions {
+			q, n := position.Wide(), m.Normals[i].Wide()
+			y, z := q.Y-test.bend, q.Z+test.distance-test.bend // from the axis of the bend
+			on := close(q.Y, 0) && close(n.Y, 1) && z >= -2e-5*test.distance
+			on = on || close(q.Z, -test.distance) && close(n.Z, 1) && y >= -2e-5*test.distance
+			on = on || close(math.Hypot(y, z), test.bend) && close(n.Y*test.bend, -y) && close(n.Z*test.bend, -z)
+			if !on {
+				t.Errorf("%s: the normal at %v is %v", test.call, q, n)
+			}
+		}
+		if count := len(m.Triangles); count > 10000 {
+			t.Errorf("%s has %d triangles", test.call, count)
+		}
+		for _, tri := range m.Triangles {
+			a, b, c := m.Positions[tri[0]].Wide(), m.Positions[tri[1]].Wide(), m.Positions[tri[2]].Wide()
+			ab, bc, ca := b.Sub(a), c.Sub(b), a.Sub(c)
+			normal := ab.Cross(bc)
+			if normal.Unit().Dot(m.Normals[tri[0]].Wide()) < 0.99 {
+				t.Errorf("%s: triangle %v faces %v, its normal is %v", test.call, tri, normal.Unit(), m.Normals[tri[0]])
+			}
+			longest := max(ab.Dot(ab), bc.Dot(bc), ca.Dot(ca))
+			if height := math.Sqrt(normal.Dot(normal)) / longest; height < 0.2 {
+				t.Errorf("%s: triangle %v is %.3f of its longest edge wide", test.call, tri, height)
+			}
 		}
 	}
 }

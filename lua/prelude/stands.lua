@@ -48,25 +48,31 @@ function stands.cove(given)
   local back, bend, height = o.distance or 9 * r, o.bend or math.min(6 * r, o.distance or 6 * r), o.height or 40 * r
   if bend > back then error("stands.cove: bend must be at most distance, " .. back .. " metres, got " .. bend, 0) end
   if height <= bend then error("stands.cove: height must be > bend, " .. bend .. " metres, got " .. height, 0) end
-  -- The section in y and z with its true normals: floor, quarter circle, wall.
-  local section = { { 0, o.front or 40 * r, 1, 0 }, { 0, bend - back, 1, 0 } }
-  for step = 1, 63 do
-    local c, s = math.cos(math.pi / 2 * step / 64), math.sin(math.pi / 2 * step / 64)
-    section[#section + 1] = { bend - bend * c, bend - back - bend * s, c, s }
-  end
-  section[#section + 1] = { bend, -back, 0, 1 }
-  section[#section + 1] = { height, -back, 0, 1 }
+  -- The section in y and z with its true normals: floor, quarter circle, wall. It is cut into cells no longer than a 48th of the longest
+  -- way across, so that none is a sliver; the curve has twelve at least, for its form.
+  local floor, arc, width = (o.front or 40 * r) + back - bend, math.pi / 2 * bend, o.width or 60 * r
+  local cell = math.max(width, floor, arc, height - bend) / 48
+  local function pieces(length) return math.ceil(length / cell - 1e-9) end
+  local section = {}
+  local function along(count, first, point) for k = first, count do section[#section + 1] = point(k / count) end end
+  along(pieces(floor), 0, function(u) return { 0, bend - back + floor * (1 - u), 1, 0 } end)
+  along(math.max(12, pieces(arc)), 1, function(u)
+    local c, s = math.cos(math.pi / 2 * u), math.sin(math.pi / 2 * u)
+    return { bend - bend * c, bend - back - bend * s, c, s }
+  end)
+  along(pieces(height - bend), 1, function(u) return { bend + (height - bend) * u, -back, 0, 1 } end)
   local positions, normals, triangles = {}, {}, {}
-  local half = (o.width or 60 * r) / 2
+  local columns = pieces(width)
   for i, p in ipairs(section) do
-    for _, x in ipairs{ -half, half } do
-      positions[#positions + 1] = { x, keys.round(p[1]), keys.round(p[2]) }
-      normals[#normals + 1] = { 0, keys.round(p[3]), keys.round(p[4]) }
-    end
-    if i > 1 then
-      local a = 2 * i - 3 -- left and right of the strip before, then of this one
-      triangles[#triangles + 1] = { a, a + 1, a + 3 }
-      triangles[#triangles + 1] = { a, a + 3, a + 2 }
+    local y, z, normal = keys.round(p[1]), keys.round(p[2]), { 0, keys.round(p[3]), keys.round(p[4]) }
+    for k = 0, columns do
+      positions[#positions + 1] = { keys.round(width * (k / columns - 0.5)), y, z }
+      normals[#normals + 1] = normal
+      if i > 1 and k > 0 then
+        local a, b = #positions - columns - 2, #positions - 1 -- left on the row before, left on this one
+        triangles[#triangles + 1] = { a, a + 1, b + 1 }
+        triangles[#triangles + 1] = { a, b + 1, b }
+      end
     end
   end
   return place{
