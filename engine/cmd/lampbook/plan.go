@@ -2,7 +2,7 @@ package main
 
 import (
 	"context"
-	"fmt"
+	"slices"
 	"strings"
 	"time"
 
@@ -43,12 +43,16 @@ func plan(ctx context.Context, r *request, v *view) error {
 	on := onSheets(j.plan)
 	v.say("%s: %s in %s, %s", r.scene, count(sum.Frames, "frame"), count(sum.Casts, "cast"), count(sum.Sheets, "sheet"))
 	for i, c := range casts {
-		rays := total(render.Estimate(c))
+		cast := render.Estimate(c)
+		rays := total(cast)
 		sum.Rays += rays
+		sum.CameraRays, sum.ShadowRays = sum.CameraRays+cast.CameraRays, sum.ShadowRays+cast.ShadowRays
 		s := j.plan.Frames[c.Frames[0]].Settings
-		v.say("\ncast %d: %s, %d × %d, %s, at most %s rays", i+1, count(len(c.Frames), "frame"), s.Width, s.Height, count(s.Samples, "sample"), raysText(rays))
+		v.say("\ncast %d: %s, %d × %d, %s, at most %s rays", i+1, count(len(c.Frames), "frame"), s.Width, s.Height, samplesText(j.plan, c), raysText(rays))
 		for _, k := range c.Frames {
-			sum.RaysAlone += total(render.Estimate(render.Cast{Plan: j.plan, Frames: []int{k}}))
+			alone := render.Estimate(render.Cast{Plan: j.plan, Frames: []int{k}})
+			sum.RaysAlone += total(alone)
+			sum.CameraAlone, sum.ShadowAlone = sum.CameraAlone+alone.CameraRays, sum.ShadowAlone+alone.ShadowRays
 			f := &j.plan.Frames[k]
 			line := plannedLine{Event: "frame", Name: f.Name, Tags: report.TagObject(f.Tags), Cast: i + 1}
 			for _, file := range filesOf(f, on[k]) {
@@ -72,7 +76,11 @@ func plan(ctx context.Context, r *request, v *view) error {
 		return err
 	}
 	sum.Time, sum.Disk = cost.seconds, cost.bytes
-	v.say("\nrays  at most %s%s", raysText(sum.Rays), savingText(sum.Rays, sum.RaysAlone))
+	v.say("\nrays  at most %s: %s from the camera, %s to lights", raysText(sum.Rays), raysText(sum.CameraRays), raysText(sum.ShadowRays))
+	if sum.RaysAlone > sum.Rays {
+		v.say("      sharing casts saves %.0f %% of %s: %.0f %% from the camera, %.0f %% to lights", saving(sum.Rays, sum.RaysAlone), raysText(sum.RaysAlone),
+			saving(sum.CameraRays, sum.CameraAlone), saving(sum.ShadowRays, sum.ShadowAlone))
+	}
 	v.say("time  %s to %s on this machine", span(seconds(cost.seconds[0])), span(seconds(cost.seconds[1])))
 	v.say("disk  %s to %s in %s", bytesText(int64(cost.bytes[0])), bytesText(int64(cost.bytes[1])), r.out)
 	v.summary = sum
@@ -92,14 +100,18 @@ type plannedLine struct {
 // planSummary is the last JSON line of a plan.
 type planSummary struct {
 	ending
-	Frames    int        `json:"frames"`
-	Casts     int        `json:"casts"`
-	Sheets    int        `json:"sheets"`
-	Faulty    int        `json:"faulty"`
-	Rays      int64      `json:"rays"`       // at most
-	RaysAlone int64      `json:"rays_alone"` // at most, if every frame were cast alone
-	Time      [2]float64 `json:"seconds"`    // likely from, to
-	Disk      [2]float64 `json:"bytes"`      // likely from, to
+	Frames      int        `json:"frames"`
+	Casts       int        `json:"casts"`
+	Sheets      int        `json:"sheets"`
+	Faulty      int        `json:"faulty"`
+	Rays        int64      `json:"rays"`       // at most
+	RaysAlone   int64      `json:"rays_alone"` // at most, if every frame were cast alone
+	CameraRays  int64      `json:"camera_rays"`
+	ShadowRays  int64      `json:"shadow_rays"`
+	CameraAlone int64      `json:"camera_rays_alone"`
+	ShadowAlone int64      `json:"shadow_rays_alone"`
+	Time        [2]float64 `json:"seconds"` // likely from, to
+	Disk        [2]float64 `json:"bytes"`   // likely from, to
 }
 
 func (s planSummary) ended(e ending) any {
@@ -112,12 +124,21 @@ func seconds(s float64) time.Duration { return time.Duration(s * float64(time.Se
 
 func total(s render.Stats) int64 { return s.CameraRays + s.ShadowRays }
 
-// savingText says what sharing casts saves.
-func savingText(shared, alone int64) string {
-	if alone <= shared {
-		return ""
+// samplesText says how many samples the frames of a cast take.
+func samplesText(p *model.Plan, c render.Cast) string {
+	text := count(p.Frames[c.Frames[0]].Settings.Samples, "sample")
+	if slices.ContainsFunc(c.Frames, func(i int) bool { return p.Frames[i].Settings.Noise > 0 }) {
+		text += " at most"
 	}
-	return fmt.Sprintf("; sharing casts saves %.0f %% of %s", 100*float64(alone-shared)/float64(alone), raysText(alone))
+	return text
+}
+
+// saving is the share of rays that sharing casts saves, in percent.
+func saving(shared, alone int64) float64 {
+	if alone == 0 {
+		return 0
+	}
+	return 100 * float64(alone-shared) / float64(alone)
 }
 
 // tagsText lists a frame's tags on one line.
