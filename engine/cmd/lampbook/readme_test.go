@@ -1,6 +1,8 @@
 package main
 
 import (
+	"errors"
+	"io"
 	"os"
 	"path/filepath"
 	"regexp"
@@ -11,6 +13,7 @@ import (
 	"github.com/spf13/pflag"
 
 	"lampbook/lua/host"
+	"lampbook/scenes"
 )
 
 // TestReadmeListsEveryCommandAndOption holds the tables of README.md against the commands, both ways.
@@ -84,7 +87,8 @@ func TestDefaultFolder(t *testing.T) {
 	}
 }
 
-// TestReadmeScene runs the first scene of README.md as a reader types it: its first four steps, and all of them.
+// TestReadmeScene runs the first scene of README.md as a reader types it: its first four steps, all of them, and each further example after
+// the first four, beside the tables that the examples read.
 func TestReadmeScene(t *testing.T) {
 	text, err := os.ReadFile("../../../README.md")
 	if err != nil {
@@ -94,20 +98,43 @@ func TestReadmeScene(t *testing.T) {
 	for _, m := range regexp.MustCompile("(?s)```lua\n(.*?)```").FindAllStringSubmatch(string(text), -1) {
 		steps = append(steps, m[1])
 	}
-	if len(steps) != 5 {
-		t.Fatalf("README.md has %d steps of Lua, want 5", len(steps))
+	if len(steps) != 9 {
+		t.Fatalf("README.md has %d pieces of Lua, want 5 steps and 4 further examples", len(steps))
 	}
-	for _, test := range []struct{ steps, frames int }{{4, 1}, {5, 10}} {
-		scene := filepath.Join(t.TempDir(), "cup.lua")
-		if err := os.WriteFile(scene, []byte(strings.Join(steps[:test.steps], "\n")), 0o666); err != nil {
+	products, err := scenes.Files().Open("products.csv")
+	if err != nil {
+		t.Fatal(err)
+	}
+	defer products.Close()
+	table, err := io.ReadAll(products)
+	if err != nil {
+		t.Fatal(err)
+	}
+	rows := strings.Count(strings.TrimSpace(string(table)), "\n")
+	for _, test := range []struct {
+		what   string
+		pieces []string
+		frames int
+	}{
+		{"the first 4 steps", steps[:4], 1},
+		{"the first 5 steps", steps[:5], 10},
+		{"the turntable", append(slices.Clone(steps[:4]), steps[5]), 1 + 24},
+		{"the catalogue", append(slices.Clone(steps[:4]), steps[6]), 1 + rows},
+		{"the passes", append(slices.Clone(steps[:4]), steps[7]), 2},
+		{"EXR", append(slices.Clone(steps[:4]), steps[8]), 2},
+	} {
+		dir := t.TempDir()
+		scene := filepath.Join(dir, "cup.lua")
+		err := errors.Join(os.WriteFile(filepath.Join(dir, "products.csv"), table, 0o666), os.WriteFile(scene, []byte(strings.Join(test.pieces, "\n")), 0o666))
+		if err != nil {
 			t.Fatal(err)
 		}
 		plan, _, err := host.Evaluate(t.Context(), scene, host.Options{})
 		if err != nil {
-			t.Fatalf("the first %d steps: %v", test.steps, err)
+			t.Fatalf("%s: %v", test.what, err)
 		}
 		if len(plan.Frames) != test.frames || len(plan.Sheets) != 1 || len(plan.Warnings) > 0 {
-			t.Errorf("the first %d steps: %d frames, %d sheets, remarks %v; want %d, 1, none", test.steps, len(plan.Frames), len(plan.Sheets), plan.Warnings, test.frames)
+			t.Errorf("%s: %d frames, %d sheets, remarks %v; want %d, 1, none", test.what, len(plan.Frames), len(plan.Sheets), plan.Warnings, test.frames)
 		}
 	}
 }
