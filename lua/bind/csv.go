@@ -253,9 +253,17 @@ func completed(header record, line int, cells []string) ([]string, error) {
 		cells = cells[:len(cells)-1]
 	}
 	if len(cells) != n {
-		return nil, fmt.Errorf("%d: %d cells, and the header on line %d names %d columns", line, len(cells), header.line, n)
+		return nil, fmt.Errorf("%d: %s, and the header on line %d names %s", line, counted(len(cells), "cell"), header.line, counted(n, "column"))
 	}
 	return cells, nil
+}
+
+// counted is a number of things: "1 cell", "3 cells".
+func counted(n int, thing string) string {
+	if n == 1 {
+		return "1 " + thing
+	}
+	return fmt.Sprintf("%d %ss", n, thing)
 }
 
 // guessSeparator takes the mark that stands most often in the first line, outside quotes; a comma where none does.

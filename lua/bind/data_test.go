@@ -11,7 +11,7 @@ import (
 var dataErrorTests = []struct{ file, content, options, want string }{
 	{"a.csv", "", "", `data.csv: a.csv:1: the table is empty: its first line must name the columns`},
 	{"a.csv", "\ufeff\n \n", "", `data.csv: a.csv:1: the table is empty: its first line must name the columns`},
-	{"a.csv", "a,b\n1,2\n3\n", "", `data.csv: a.csv:3: 1 cells, and the header on line 1 names 2 columns`},
+	{"a.csv", "a,b\n1,2\n3\n", "", `data.csv: a.csv:3: 1 cell, and the header on line 1 names 2 columns`},
 	{"a.csv", "a,b\n\"1\n2\",3\n4,5,6\n", "", `data.csv: a.csv:4: 3 cells, and the header on line 1 names 2 columns`},
 	{"a.csv", "a,,c\n", "", `data.csv: a.csv:1: column 2 has no name`},
 	{"a.csv", "a,a\n", "", `data.csv: a.csv:1: two columns are named "a"`},
