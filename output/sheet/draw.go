@@ -4,7 +4,9 @@ import (
 	"image"
 	"image/color"
 	"image/draw"
+	"maps"
 	"math"
+	"regexp"
 
 	"github.com/fogleman/gg"
 )
@@ -12,7 +14,9 @@ import (
 // drawing is a plate being drawn.
 type drawing struct {
 	*composer
+	part     part
 	plate    *plate
+	missing  map[int]bool // frames without a picture, as met
 	ground   ground
 	fairness fairness
 	page     *image.RGBA // opaque, so that its bytes are an NRGBA's too
@@ -20,6 +24,7 @@ type drawing struct {
 
 // draw fetches and places the tiles, then the labels.
 func (d *drawing) draw(src Source) (*image.NRGBA, error) {
+	d.missing = maps.Clone(d.failed)
 	d.page = image.NewRGBA(image.Rect(0, 0, d.plate.width, d.plate.height))
 	draw.Draw(d.page, d.page.Rect, image.NewUniform(grey(d.ground.paper)), image.Point{}, draw.Src)
 	for _, t := range d.plate.tiles {
@@ -30,6 +35,7 @@ func (d *drawing) draw(src Source) (*image.NRGBA, error) {
 			return nil, err
 		}
 	}
+	d.restate(d.part, d.plate, d.missing)
 	for _, t := range d.plate.texts {
 		d.text(t)
 	}
@@ -39,7 +45,7 @@ func (d *drawing) draw(src Source) (*image.NRGBA, error) {
 // tile draws what stands in one place.
 func (d *drawing) tile(t tileItem, src Source) error {
 	if reason := d.plan.Frames[t.frame].Failure; reason != "" {
-		d.failed(t.cell, reason)
+		d.fail(t.cell, reason)
 		return nil
 	}
 	tile, err := src(t.frame, t.pass)
@@ -51,7 +57,8 @@ func (d *drawing) tile(t tileItem, src Source) error {
 		if reason == "" {
 			reason = "no picture"
 		}
-		d.failed(t.cell, reason)
+		d.missing[t.frame] = true
+		d.fail(t.cell, reason)
 		return nil
 	}
 	size := tile.Image.Bounds().Size()
@@ -98,8 +105,13 @@ func (d *drawing) text(t textItem) {
 	draw.Draw(d.page, box, dc.Image(), image.Point{}, draw.Over)
 }
 
-// failed draws a thin diagonal from corner to corner and the reason in the middle, where the diagonal makes room for it.
-func (d *drawing) failed(cell image.Rectangle, reason string) {
+// sceneLine is how a reason begins that a line of a scene or module is to blame for.
+var sceneLine = regexp.MustCompile(`^[^\s:]+\.lua:[0-9]+: `)
+
+// fail draws a thin diagonal from corner to corner and the reason in the middle, where the diagonal makes room for it. The line of
+// the scene is left out: it is the same in every tile of a row, and the record of the run has it.
+func (d *drawing) fail(cell image.Rectangle, reason string) {
+	reason = reason[len(sceneLine.FindString(reason)):]
 	u := d.plate.module
 	w, h := float64(cell.Dx()), float64(cell.Dy())
 	d.stroke(cell, 0, h, w, 0, max(1, u/16), d.ground.color(thirdInk))

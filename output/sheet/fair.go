@@ -5,6 +5,7 @@ import (
 	"slices"
 	"strings"
 
+	"lampbook/engine/kernel/tint"
 	"lampbook/engine/model"
 )
 
@@ -17,40 +18,68 @@ type fairness struct {
 	notes  []string     // one a setting: "samples 64, marked tiles 16"
 }
 
-// comparedSettings are what must not differ unnoticed: each with the tags that announce it and how a value reads.
+// comparedSettings are what must not differ unnoticed: each with the tags that announce it, what is compared, and how a value reads, to
+// the given significant digits where it is no whole number.
 var comparedSettings = [...]struct {
-	name string
-	tags []string
-	text func(s *model.Settings) string
+	name  string
+	tags  []string
+	value func(s *model.Settings) any // comparable
+	text  func(s *model.Settings, digits int) string
 }{
-	{"size", []string{"size", "width", "height", "resolution"}, func(s *model.Settings) string { return sizeText(s.Width, s.Height) }},
-	{"samples", []string{"samples"}, func(s *model.Settings) string { return number(float64(s.Samples), 17) }},
-	{"noise", []string{"noise"}, func(s *model.Settings) string { return noiseText(s.Noise) }},
-	{"light samples", []string{"light_samples"}, func(s *model.Settings) string { return number(float64(s.LightSamples), 17) }},
-	{"seed", []string{"seed"}, func(s *model.Settings) string { return number(float64(s.Seed), 17) }},
-	{"filter", []string{"filter"}, func(s *model.Settings) string {
-		return nameAt(int(s.Filter), "Blackman-Harris", "box")
-	}},
-	{"tone", []string{"tone", "white"}, func(s *model.Settings) string {
+	{"size", []string{"size", "width", "height", "resolution"}, func(s *model.Settings) any { return [2]int{s.Width, s.Height} },
+		func(s *model.Settings, _ int) string { return sizeText(s.Width, s.Height) }},
+	{"samples", []string{"samples"}, func(s *model.Settings) any { return s.Samples },
+		func(s *model.Settings, _ int) string { return number(float64(s.Samples), 17) }},
+	{"noise", []string{"noise"}, func(s *model.Settings) any { return s.Noise },
+		func(s *model.Settings, digits int) string { return noiseText(s.Noise, digits) }},
+	{"light samples", []string{"light_samples"}, func(s *model.Settings) any { return s.LightSamples },
+		func(s *model.Settings, _ int) string { return number(float64(s.LightSamples), 17) }},
+	{"seed", []string{"seed"}, func(s *model.Settings) any { return s.Seed },
+		func(s *model.Settings, _ int) string { return number(float64(s.Seed), 17) }},
+	{"filter", []string{"filter"}, func(s *model.Settings) any { return s.Filter },
+		func(s *model.Settings, _ int) string { return nameAt(int(s.Filter), "Blackman-Harris", "box") }},
+	{"tone", []string{"tone", "white"}, func(s *model.Settings) any { return toneOf(s) }, func(s *model.Settings, digits int) string {
 		text := nameAt(int(s.Tone), "shoulder", "neutral", "clip", "Reinhard", "ACES")
 		if s.Tone == model.ToneReinhard {
-			text += " to " + number(s.White, 4)
+			text += " to " + number(s.White, digits)
 		}
 		return text
 	}},
-	{"exposure", []string{"exposure", "ev100"}, func(s *model.Settings) string {
-		return number(s.Exposure, 4) + thinSpace + "stops"
-	}},
+	{"exposure", []string{"exposure", "ev100"}, func(s *model.Settings) any { return s.Exposure },
+		func(s *model.Settings, digits int) string { return number(s.Exposure, digits) + thinSpace + "stops" }},
+	{"background", []string{"background", "ground"}, func(s *model.Settings) any { return groundOf(s) },
+		func(s *model.Settings, _ int) string {
+			if s.Background.Transparent {
+				return "transparent"
+			}
+			return tint.Hex(s.Background.Color)
+		}},
+}
+
+// toneOf is the tone with what of its parameters counts.
+func toneOf(s *model.Settings) [2]float64 {
+	if s.Tone == model.ToneReinhard {
+		return [2]float64{float64(s.Tone), s.White}
+	}
+	return [2]float64{float64(s.Tone)}
+}
+
+// groundOf is the background with its colour only where that shows.
+func groundOf(s *model.Settings) model.Background {
+	if s.Background.Transparent {
+		return model.Background{Transparent: true}
+	}
+	return s.Background
 }
 
 // noNoise is how a target for noise reads that was not set.
 const noNoise = "none"
 
-func noiseText(target float64) string {
+func noiseText(target float64, digits int) string {
 	if target == 0 {
 		return noNoise
 	}
-	return number(target, 4) + thinSpace + "L*"
+	return number(target, digits) + thinSpace + "L*"
 }
 
 func nameAt(i int, names ...string) string {
@@ -77,14 +106,17 @@ func judge(p *model.Plan, pv *pivot) fairness {
 		return j
 	}
 	for _, c := range comparedSettings {
-		count := map[string]int{}
-		texts := make([]string, len(frames))
+		count := map[any]int{}
+		var met []int // the first frame of each value
+		values := make([]any, len(frames))
 		for n, i := range frames {
-			texts[n] = c.text(&p.Frames[i].Settings)
-			count[texts[n]]++
+			values[n] = c.value(&p.Frames[i].Settings)
+			if count[values[n]]++; count[values[n]] == 1 {
+				met = append(met, i)
+			}
 		}
 		if len(count) == 1 {
-			if texts[0] != noNoise { // a target that nobody set is no news
+			if first := &p.Frames[frames[0]].Settings; c.name != "noise" || first.Noise != 0 { // a target that nobody set is no news
 				j.same = append(j.same, c.name)
 			}
 			continue
@@ -93,26 +125,32 @@ func judge(p *model.Plan, pv *pivot) fairness {
 			j.tagged = append(j.tagged, c.name)
 			continue
 		}
-		common := texts[0] // the commonest; of equals the one met first
-		for _, t := range texts {
-			if count[t] > count[common] {
-				common = t
+		common := values[0] // the commonest; of equals the one met first
+		for _, v := range values {
+			if count[v] > count[common] {
+				common = v
 			}
 		}
+		text := tellingApart(p, met, c.text)
+		var commonText string
 		var others []string
 		for n, i := range frames {
-			if texts[n] != common {
+			if values[n] != common {
 				j.unfair[i] = true
-				if !slices.Contains(others, texts[n]) {
-					others = append(others, texts[n])
-				}
+			}
+		}
+		for n, i := range met {
+			if c.value(&p.Frames[i].Settings) == common {
+				commonText = text[n]
+			} else {
+				others = append(others, text[n])
 			}
 		}
 		const most = 3
 		if len(others) > most {
 			others = append(others[:most:most], "others")
 		}
-		j.notes = append(j.notes, fmt.Sprintf("%s %s, marked tiles %s", c.name, common, list(others, "and")))
+		j.notes = append(j.notes, fmt.Sprintf("%s %s, marked tiles %s", c.name, commonText, list(others, "and")))
 	}
 	first := &p.Frames[frames[0]]
 	for _, part := range [...]struct {
@@ -127,7 +165,6 @@ func judge(p *model.Plan, pv *pivot) fairness {
 		{"materials", func(a, b *model.Frame) bool {
 			return slices.EqualFunc(a.Things, b.Things, func(x, y model.Placement) bool { return sameMaterials(p, x, y) })
 		}},
-		{"background", func(a, b *model.Frame) bool { return a.Settings.Background == b.Settings.Background }},
 	} {
 		for _, i := range frames[1:] {
 			if !part.same(first, &p.Frames[i]) {
@@ -137,6 +174,24 @@ func judge(p *model.Plan, pv *pivot) fairness {
 		}
 	}
 	return j
+}
+
+// tellingApart writes a setting of frames in which it differs, in as many digits as that takes, four at least.
+func tellingApart(p *model.Plan, frames []int, text func(s *model.Settings, digits int) string) []string {
+	var texts []string
+	for digits := 4; digits <= 17; digits++ {
+		texts = texts[:0]
+		alike := false
+		for _, i := range frames {
+			t := text(&p.Frames[i].Settings, digits)
+			alike = alike || slices.Contains(texts, t)
+			texts = append(texts, t)
+		}
+		if !alike {
+			break
+		}
+	}
+	return texts
 }
 
 // announces reports whether a tag's name, with or without a unit, says that a setting differs.

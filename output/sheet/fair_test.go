@@ -37,20 +37,32 @@ func TestFairness(t *testing.T) {
 		{"equal by value", func(p *model.Plan) { p.Frames[1].Things[0].Materials[0] = 2; p.Frames[2].Lights[0] = 2 }, nil, "", "Settings alike"},
 		{"materials and lights", func(p *model.Plan) { p.Frames[1].Things[0].Materials[0] = 1; p.Frames[2].Lights[0] = 1 }, nil, "",
 			"What differs: lights and materials. Settings alike"},
-		{"camera, place, ground", func(p *model.Plan) {
+		{"exposures that differ past the fourth digit", func(p *model.Plan) {
+			for i := range p.Frames {
+				p.Frames[i].Settings.Exposure = 1.23451
+			}
+			p.Frames[2].Settings.Exposure = 1.23452
+		}, nil, "2", "Not alike: exposure 1.23451\u2009stops, marked tiles 1.23452\u2009stops. Same size"},
+		{"ground", func(p *model.Plan) { p.Frames[3].Settings.Background.Color = tint.Grey(1) }, nil, "3",
+			"Not alike: background #000000, marked tiles #ffffff. Same size"},
+		{"a colour under nothing", func(p *model.Plan) {
+			for i := range p.Frames {
+				p.Frames[i].Settings.Background = model.Background{Transparent: true, Color: tint.Grey(float32(i))}
+			}
+		}, nil, "", "Settings alike"},
+		{"camera and place", func(p *model.Plan) {
 			p.Frames[1].Camera.FNumber = 4
 			p.Frames[1].Things[0].At[0] = 1
-			p.Frames[3].Settings.Background.Color = tint.Grey(1)
-		}, nil, "", "What differs: camera, things and background. Settings alike"},
+		}, nil, "", "What differs: camera and things. Settings alike"},
 		{"one of four", func(p *model.Plan) { p.Frames[2].Settings.Samples = 16 }, nil, "2",
-			"Not alike: samples 64, marked tiles 16. Same size, light samples, seed, filter, tone and exposure"},
+			"Not alike: samples 64, marked tiles 16. Same size, light samples, seed, filter, tone, exposure and background"},
 		{"noise", func(p *model.Plan) { p.Frames[1].Settings.Noise = 0.5 }, nil, "1", "Not alike: noise none, marked tiles 0.5\u2009L*"},
 		{"one noise", func(p *model.Plan) {
 			for i := range p.Frames {
 				p.Frames[i].Settings.Noise = 0.5
 			}
 			p.Frames[3].Settings.Samples = 256
-		}, nil, "3", "Not alike: samples 64, marked tiles 256. Same size, noise, light samples, seed, filter, tone and exposure"},
+		}, nil, "3", "Not alike: samples 64, marked tiles 256. Same size, noise, light samples, seed, filter, tone, exposure and background"},
 		{"the first is the odd one", func(p *model.Plan) { p.Frames[0].Settings.Tone = model.ToneACES }, nil, "0", "Not alike: tone shoulder, marked tiles ACES"},
 		{"two and two: the first pair counts as common", func(p *model.Plan) { p.Frames[2].Settings.Seed = 7; p.Frames[3].Settings.Seed = 7 }, nil, "2 3",
 			"Not alike: seed 0, marked tiles 7"},
@@ -66,7 +78,7 @@ func TestFairness(t *testing.T) {
 				p.Frames[i].Settings.Exposure = float64(i)
 				p.Frames[i].Tags = tags("exposure_stops", i)
 			}
-		}, []string{"exposure_stops"}, "", "Same size, samples, light samples, seed, filter and tone"},
+		}, []string{"exposure_stops"}, "", "Same size, samples, light samples, seed, filter, tone and background"},
 		{"a tag with another name does not announce it", func(p *model.Plan) { p.Frames[3].Settings.Exposure = -1 }, nil, "3",
 			"Not alike: exposure 0\u2009stops, marked tiles \u22121\u2009stops"},
 		{"size", func(p *model.Plan) { p.Frames[3].Settings.Width = 96 }, nil, "3", "Not alike: size 48\u2009×\u200936, marked tiles 96\u2009×\u200936"},

@@ -42,6 +42,7 @@ type plate struct {
 	module        float64
 	texts         []textItem
 	tiles         []tileItem
+	subject       [2]int // of texts: where its lines begin and end
 }
 
 // composer lays plates of one sheet.
@@ -51,7 +52,8 @@ type composer struct {
 	pivot     *pivot
 	set       *setter
 	words     map[string]wording
-	foot      [][]string // paragraphs of items
+	failed    map[int]bool // frames that the plan knows to fail
+	foot      [][]string   // paragraphs of items
 	cell      image.Point
 	scale     float64 // of tiles against the sheet's own size for them; 1 or less
 	page      int     // which of its table's pages this is, from 0
@@ -150,7 +152,7 @@ func (c *composer) composeWith(p part, u float64) *plate {
 	g.name = style{sized(u, headingSize), regular, secondInk}
 	g.headingLead = leadFor(u, 1, g.heading.size)
 	g.captionStyle = style{sized(u, captionSize), regular, secondInk}
-	if c.sheet.Caption != "" {
+	if c.captioned() {
 		g.captionLead = leadFor(u, 1, g.captionStyle.size)
 	}
 	xs, right := c.columnPlaces(p, u)
@@ -223,7 +225,27 @@ func (c *composer) head(p part, g *grid) float64 {
 	y := 2*u + math.Round(c.set.capHeight(title))
 	y = g.putAll(c.set.wrap(c.title(), title, g.measure, 3), g.left, y, leadFor(u, 1.75, title.size))
 	y += math.Ceil(1.5 * u)
-	return g.putAll(c.set.wrap(c.subject(p), g.name, g.measure, 3), g.left, y, g.headingLead)
+	g.plate.subject[0] = len(g.plate.texts)
+	y = g.putAll(c.set.wrap(c.subject(p, c.failed), g.name, g.measure, 3), g.left, y, g.headingLead)
+	g.plate.subject[1] = len(g.plate.texts)
+	return y
+}
+
+// restate writes the subject anew on the lines that it has, once it is known which frames failed.
+func (c *composer) restate(p part, pl *plate, failed map[int]bool) {
+	old := pl.texts[pl.subject[0]:pl.subject[1]]
+	if len(old) == 0 {
+		return
+	}
+	room := float64(pl.width) - old[0].x - 2*pl.module
+	for i, l := range c.set.wrap(c.subject(p, failed), old[0].line.style, room, len(old)) {
+		old[i].line = l
+	}
+}
+
+// captioned reports whether tiles have captions; where the frame's name is the heading, it is not said twice.
+func (c *composer) captioned() bool {
+	return c.sheet.Caption != "" && !(c.pivot.byName && c.sheet.Caption == "{"+model.CaptionName+"}")
 }
 
 // oneAxisTiles lays lines of tiles, each under its own heading, and returns the bottom.

@@ -284,18 +284,20 @@ func TestSubject(t *testing.T) {
 		sheet model.Sheet
 		want  string
 	}{
-		{model.Sheet{Rows: []string{"glaze"}, Columns: []string{"gloss"}}, "gloss 4 to 64 by glaze, 5 frames"},
-		{model.Sheet{Pages: []string{"glaze"}, Columns: []string{"gloss"}}, "glaze slate: gloss 4 to 64, 3 frames"},
-		{model.Sheet{}, "6 frames"},
-		{model.Sheet{Columns: []string{"kind"}}, "kind grey card, 1 frame"},
-		{model.Sheet{Columns: []string{"glaze", "gloss"}}, "glaze and gloss 4 to 64, 5 frames"},
+		{model.Sheet{Rows: []string{"glaze"}, Columns: []string{"gloss"}}, "5 frames, 1 failed"},
+		{model.Sheet{Pages: []string{"glaze"}, Columns: []string{"gloss"}}, "glaze slate: 3 frames"},
+		{model.Sheet{}, "6 frames, 1 failed"},
+		{model.Sheet{Columns: []string{"kind"}}, "1 frame"},
+		{model.Sheet{Columns: []string{"glaze", "gloss"}}, "5 frames, 1 failed"},
 	} {
-		pages, cp, err := plates(bowls(), &c.sheet, Options{})
+		p := bowls()
+		p.Frames[1].Failure = "no mesh" // celadon, gloss 16
+		pages, cp, err := plates(p, &c.sheet, Options{})
 		if err != nil {
 			t.Fatal(err)
 		}
 		cp.turnTo(pages[0])
-		if got := cp.subject(pages[0].part); got != c.want {
+		if got := cp.subject(pages[0].part, cp.failed); got != c.want {
 			t.Errorf("got %q, want %q", got, c.want)
 		}
 	}

@@ -41,7 +41,12 @@ func plates(p *model.Plan, s *model.Sheet, o Options) ([]pagePlan, *composer, er
 	if err != nil {
 		return nil, nil, err
 	}
-	c := &composer{plan: p, sheet: s, pivot: pv, set: set, words: wordings(p, s, pv), scale: 1}
+	c := &composer{plan: p, sheet: s, pivot: pv, set: set, words: wordings(p, s, pv), failed: map[int]bool{}, scale: 1}
+	for _, i := range pv.frames {
+		if p.Frames[i].Failure != "" {
+			c.failed[i] = true
+		}
+	}
 	c.foot = footOf(p, s, pv, judge(p, pv), o.Foot)
 	natural := naturalCell(p, s, pv)
 	used := map[string]bool{}

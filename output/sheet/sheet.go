@@ -47,7 +47,7 @@ func Lay(p *model.Plan, s model.Sheet, src Source, o Options, emit func(Page) er
 	j := judge(p, c.pivot)
 	for _, pg := range pages {
 		c.turnTo(pg)
-		d := drawing{composer: c, plate: c.compose(pg.part), ground: grounds[s.Paper], fairness: j}
+		d := drawing{composer: c, part: pg.part, plate: c.compose(pg.part), ground: grounds[s.Paper], fairness: j}
 		img, err := d.draw(src)
 		if err != nil {
 			return err

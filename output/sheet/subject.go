@@ -47,45 +47,33 @@ func (c *composer) title() string {
 	return strings.ToUpper(words[:min(1, len(words))]) + words[min(1, len(words)):]
 }
 
-// subject says in one line what a page shows: "gloss 4 to 256 by glaze, 12 frames".
-func (c *composer) subject(p part) string {
-	var frames []int
+// subject says in one line what a page holds, beside what its headings say: "glaze slate: 12 frames, 3 failed". failed are those of which that
+// is known.
+func (c *composer) subject(p part, failed map[int]bool) string {
 	seen := map[int]bool{}
+	lost := 0
 	for r := p.row0; r < p.row1; r++ {
 		for k := p.col0; k < p.col1; k++ {
-			if pl := p.table.cells[r*len(p.table.columns)+k]; pl.frame >= 0 && !seen[pl.frame] {
-				seen[pl.frame] = true
-				frames = append(frames, pl.frame)
-			}
-		}
-	}
-	spans := func(keys []string) string {
-		var all []string
-		for _, key := range keys {
-			if key == model.AxisPass {
-				all = append(all, "passes")
+			frame := p.table.cells[r*len(p.table.columns)+k].frame
+			if frame < 0 || seen[frame] {
 				continue
 			}
-			all = append(all, span(key, valuesOf(c.plan, frames, key), c.words[key]))
+			seen[frame] = true
+			if failed[frame] {
+				lost++
+			}
 		}
-		return list(all, "and")
 	}
-	var parts []string
-	if s := spans(c.pivot.columnKeys); s != "" {
-		parts = append(parts, s)
+	text := strconv.Itoa(len(seen)) + " frames"
+	if len(seen) == 1 {
+		text = "1 frame"
 	}
-	if s := spans(c.pivot.rowKeys); s != "" {
-		parts[0] += " by " + s
+	if lost > 0 {
+		text += ", " + strconv.Itoa(lost) + " failed"
 	}
-	count := strconv.Itoa(len(frames)) + " frames"
-	if len(frames) == 1 {
-		count = "1 frame"
-	}
-	parts = append(parts, count)
 	if c.pageCount > 1 {
-		parts = append(parts, fmt.Sprintf("page %d of %d", c.page+1, c.pageCount))
+		text += fmt.Sprintf(", page %d of %d", c.page+1, c.pageCount)
 	}
-	text := strings.Join(parts, ", ")
 	var page []string
 	for i, key := range c.pivot.pageKeys {
 		label, _ := labelOf(key)
@@ -127,7 +115,7 @@ func footOf(p *model.Plan, s *model.Sheet, pv *pivot, j fairness, f Foot) [][]st
 			if t := number(float64(fr.Settings.Samples), 17); !slices.Contains(samples, t) {
 				samples = append(samples, t)
 			}
-			if t := noiseText(fr.Settings.Noise); !slices.Contains(noises, t) {
+			if t := noiseText(fr.Settings.Noise, 4); !slices.Contains(noises, t) {
 				noises = append(noises, t)
 			}
 		}
@@ -142,10 +130,14 @@ func footOf(p *model.Plan, s *model.Sheet, pv *pivot, j fairness, f Foot) [][]st
 		return list(values, "and") + unit
 	}
 	add(one(sizes, " pixels", "various sizes"))
+	rays := " samples"
+	if len(samples) == 1 && samples[0] == "1" {
+		rays = " sample"
+	}
 	if len(noises) == 0 || len(noises) == 1 && noises[0] == noNoise {
-		add(one(samples, " samples", "various numbers of samples"))
+		add(one(samples, rays, "various numbers of samples"))
 	} else {
-		add(one(samples, " samples at most", "various numbers of samples at most"))
+		add(one(samples, rays+" at most", "various numbers of samples at most"))
 		add("noise " + one(noises, "", "various"))
 	}
 	if f.PlanHash != "" {

@@ -24,6 +24,9 @@ func (c *composer) columnHeadings(p part, g *grid, xs []float64, y float64) floa
 		}
 		label, _ := labelOf(key)
 		g.put(c.set.fit(label, g.name, g.measure), g.left, y)
+		if k == 0 {
+			c.rowNames(p, g, y)
+		}
 		y += g.headingLead
 		var headings []heading
 		deepest := 1
@@ -40,9 +43,6 @@ func (c *composer) columnHeadings(p part, g *grid, xs []float64, y float64) floa
 			i += n
 		}
 		y = g.stand(headings, y, deepest)
-	}
-	if len(c.pivot.rowKeys) > 0 {
-		c.rowNames(p, g, y)
 	}
 	return y + math.Ceil(g.u/2)
 }
@@ -91,7 +91,7 @@ func (c *composer) rowHeadings(p part, g *grid, right float64) (columns []rowHea
 	return columns, x
 }
 
-// rowNames says the names of the rows' tags on the baseline of the column headings.
+// rowNames says the names of the rows' tags on the baseline of the first name of the columns' tags.
 func (c *composer) rowNames(p part, g *grid, y float64) {
 	columns, _ := c.rowHeadings(p, g, g.measure)
 	for k, key := range c.pivot.rowKeys {

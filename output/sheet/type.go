@@ -124,8 +124,8 @@ func (s *setter) set(text string, st style) line {
 			continue
 		}
 		w := st.weight
-		if !s.has(w, r) {
-			w = fallback
+		if !s.has(w, r) || r == '-' {
+			w = fallback // the family's own hyphen is as long as its minus: T-11 would read as a difference
 		}
 		fit := s.fitOf(w, r)
 		if !s.has(w, r) || fit < smallestFit {

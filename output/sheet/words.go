@@ -1,7 +1,6 @@
 package sheet
 
 import (
-	"fmt"
 	"math"
 	"strconv"
 	"strings"
@@ -176,20 +175,4 @@ func captionOf(parts []model.CaptionPart, f *model.Frame, pass string, words map
 		}
 	}
 	return b.String()
-}
-
-// span says what of a tag a sheet shows: "gloss 4 to 256" for numbers, the tag's name alone for words.
-func span(key string, values []model.Value, w wording) string {
-	label, _ := labelOf(key)
-	if len(values) == 1 {
-		return label + " " + w.text(values[0])
-	}
-	low, high := math.Inf(1), math.Inf(-1)
-	for _, v := range values {
-		if v.Kind != model.NumberValue {
-			return label
-		}
-		low, high = min(low, v.Number), max(high, v.Number)
-	}
-	return fmt.Sprintf("%s %s to %s", label, number(low, w.digits), w.text(model.Value{Kind: model.NumberValue, Number: high}))
 }

@@ -78,12 +78,6 @@ func TestWords(t *testing.T) {
 		}
 	}
 	w := wordingOf("angle_deg", nil)
-	if got := span("angle_deg", []model.Value{num(0), num(350), num(10)}, w); got != "angle 0 to 350°" {
-		t.Errorf("got %q", got)
-	}
-	if got := span("glaze", []model.Value{txt("slate"), txt("chun")}, w); got != "glaze" {
-		t.Errorf("got %q", got)
-	}
 	if got := w.text(model.Value{Kind: model.TruthValue, Truth: true}); got != "yes" {
 		t.Errorf("got %q", got)
 	}
