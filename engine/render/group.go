@@ -68,11 +68,7 @@ type Stats struct {
 func Estimate(c Cast) Stats {
 	f := &c.Plan.Frames[c.Frames[0]]
 	camera := int64(f.Settings.Width) * int64(f.Settings.Height) * int64(f.Settings.Samples)
-	type key struct {
-		name  string
-		shape model.Hash
-	}
-	seen := map[key]bool{}
+	seen := map[model.Light]bool{}
 	perHit := int64(0)
 	for _, i := range c.Frames {
 		for _, id := range c.Plan.Frames[i].Lights {
@@ -80,11 +76,11 @@ func Estimate(c Cast) Stats {
 			if l.Kind == model.LightAmbient {
 				continue
 			}
-			k := key{l.Name, model.Sum(shapeOf(l))}
-			if seen[k] {
+			shape := shapeOf(l)
+			if seen[shape] {
 				continue
 			}
-			seen[k] = true
+			seen[shape] = true
 			if l.Kind == model.LightArea {
 				perHit += int64(f.Settings.LightSamples)
 			} else {

@@ -62,17 +62,22 @@ func estimate(ctx context.Context, j *job, casts []render.Cast, threads int) (co
 	var probes []probe
 	var once time.Duration
 	for _, c := range spread(casts, probeCasts) {
-		small := shrink(j.plan, c)
+		looks := c.Frames[:min(len(c.Frames), probeLooks)]
+		small := shrink(j.plan, looks)
+		shown := make([]showing, len(looks))
+		for k, i := range looks {
+			shown[k] = on[i]
+		}
 		// The first time round builds the meshes' hierarchies and the encoders' tables, which a run does once, too.
 		started := time.Now()
-		if _, _, err := try(ctx, engine, resized(small, 1, 1, 1), on, threads); err != nil {
+		if _, _, err := try(ctx, engine, resized(small, 1, 1, 1), shown, threads); err != nil {
 			return cost{}, err
 		}
 		once += time.Since(started)
 		var best probe
 		tried := false
 		for range probeTries {
-			p, ok, err := try(ctx, engine, small, on, threads)
+			p, ok, err := try(ctx, engine, small, shown, threads)
 			if err != nil {
 				return cost{}, err
 			}
@@ -202,11 +207,17 @@ func spread(casts []render.Cast, n int) []render.Cast {
 	return out
 }
 
-// shrink returns a cast of the same looks, or the first few of them, in a plan of its own, small enough for a probe: fewer pixels
+// shrink returns a cast of the frames, which share one, in a plan that holds them alone, small enough for a probe: fewer pixels
 // first, then fewer samples.
-func shrink(p *model.Plan, c render.Cast) render.Cast {
-	small := render.Cast{Plan: p, Frames: c.Frames[:min(len(c.Frames), probeLooks)]}
-	s := p.Frames[small.Frames[0]].Settings
+func shrink(p *model.Plan, frames []int) render.Cast {
+	plan := *p
+	plan.Frames = nil
+	small := render.Cast{Plan: &plan}
+	for k, i := range frames {
+		plan.Frames = append(plan.Frames, p.Frames[i])
+		small.Frames = append(small.Frames, k)
+	}
+	s := plan.Frames[0].Settings
 	pixels := float64(s.Width) * float64(s.Height)
 	keep := probeRays / float64(total(render.Estimate(small))) // of the rays
 	scale := math.Sqrt(min(1, max(keep, probePixels/pixels)))
