@@ -106,19 +106,21 @@ func (d *drawing) text(t textItem) {
 }
 
 // sceneLine is how a reason begins that a line of a scene or module is to blame for.
-var sceneLine = regexp.MustCompile(`^[^\s:]+\.lua:[0-9]+: `)
+var sceneLine = regexp.MustCompile(`^[^\n:]+\.lua:[0-9]+: (mesh\.load: )?`)
 
-// fail draws a thin diagonal from corner to corner and the reason in the middle, where the diagonal makes room for it. The line of
-// the scene is left out: it is the same in every tile of a row, and the record of the run has it.
+// tileReason is a reason as tiles give it: the file and what is wrong with it. The line of the scene and its call are left out: they
+// are the same in every tile of a row, and the record of the run has them.
+func tileReason(reason string) string { return reason[len(sceneLine.FindString(reason)):] }
+
+// fail draws a thin diagonal from corner to corner and the reason in the middle, where the diagonal makes room for it.
 func (d *drawing) fail(cell image.Rectangle, reason string) {
-	reason = reason[len(sceneLine.FindString(reason)):]
 	u := d.plate.module
 	w, h := float64(cell.Dx()), float64(cell.Dy())
 	d.stroke(cell, 0, h, w, 0, max(1, u/16), d.ground.color(thirdInk))
 	st := style{sized(u, captionSize), regular, firstInk}
 	lead := leadFor(u, 0.85, st.size)
 	pad := math.Ceil(u / 2)
-	lines := d.set.wrap(reason, st, w-2*pad, max(1, min(6, int((h-2*pad)/lead))))
+	lines := d.set.wrap(tileReason(reason), st, w-2*pad, max(1, min(6, int((h-2*pad)/lead))))
 	var box image.Rectangle
 	var items []textItem
 	cap := d.set.capHeight(st)

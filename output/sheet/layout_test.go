@@ -303,6 +303,94 @@ func TestSubject(t *testing.T) {
 	}
 }
 
+// TestFailuresCounted: the line under the title counts the frames that the plan knows to fail and those that have no picture when it is drawn.
+func TestFailuresCounted(t *testing.T) {
+	p := bowls()
+	p.Frames[1].Failure = "no mesh"
+	s := model.Sheet{Name: "s", Rows: []string{"glaze"}, Columns: []string{"gloss"}}
+	pages, c, err := plates(p, &s, Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	c.turnTo(pages[0])
+	d := drawing{composer: c, part: pages[0].part, plate: c.compose(pages[0].part), ground: grounds[s.Paper]}
+	said := func() string { return d.plate.texts[d.plate.subject[0]].line.text }
+	if got := said(); got != "5 frames, 1 failed" {
+		t.Errorf("before: %q", got)
+	}
+	src := discs(p, false)
+	if _, err := d.draw(func(frame int, pass string) (Tile, error) {
+		if frame == 2 {
+			return Tile{Failure: "not a number at pixel 3, 4"}, nil
+		}
+		return src(frame, pass)
+	}); err != nil {
+		t.Fatal(err)
+	}
+	if got := said(); got != "5 frames, 2 failed" {
+		t.Errorf("after: %q", got)
+	}
+}
+
+func TestTileReason(t *testing.T) {
+	for reason, want := range map[string]string{
+		"scenes/shelf.lua:12: mesh.load: jug.obj:4: no faces": "jug.obj:4: no faces",
+		"my scenes/shelf.lua:12: camera: nothing to frame":    "camera: nothing to frame",
+		"not a number at pixel 3, 4":                          "not a number at pixel 3, 4",
+		"":                                                    "",
+	} {
+		if got := tileReason(reason); got != want {
+			t.Errorf("%q: got %q, want %q", reason, got, want)
+		}
+	}
+}
+
+// TestNamesSaidOnce: where a frame's name is its heading, a caption of the name alone is left out; other captions stay.
+func TestNamesSaidOnce(t *testing.T) {
+	for _, c := range []struct {
+		sheet model.Sheet
+		want  int
+	}{
+		{model.Sheet{Caption: "{name}"}, 1}, {model.Sheet{Caption: "{name}: {kind}"}, 1}, {model.Sheet{Columns: []string{"kind"}, Caption: "{name}"}, 1},
+		{model.Sheet{}, 1}, {model.Sheet{Columns: []string{"kind"}}, 0},
+	} {
+		pages, cp, err := plates(bowls(), &c.sheet, Options{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		cp.turnTo(pages[0])
+		n := 0
+		for _, x := range cp.compose(pages[0].part).texts {
+			if x.line.text == "card" {
+				n++
+			}
+		}
+		if n != c.want {
+			t.Errorf("%+v: the name stands there %d times, want %d", c.sheet, n, c.want)
+		}
+	}
+}
+
+// TestAxisNamesLevel: the names of the rows' tags stand on the line of the columns' first, clear of the rows' own headings.
+func TestAxisNamesLevel(t *testing.T) {
+	s := model.Sheet{Rows: []string{"glaze"}, Columns: []string{"gloss"}}
+	pages, c, err := plates(bowls(), &s, Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	c.turnTo(pages[0])
+	at := map[string]float64{}
+	for _, x := range c.compose(pages[0].part).texts {
+		at[x.line.text] = x.baseline
+	}
+	if at["glaze"] == 0 || at["glaze"] != at["gloss"] {
+		t.Errorf("glaze on %v, gloss on %v", at["glaze"], at["gloss"])
+	}
+	if lead := leadFor(minModule, 1, sized(minModule, headingSize)); at["slate"]-at["glaze"] < 1.5*lead {
+		t.Errorf("glaze on %v, its first value on %v: nearer than lines of one text, %v apart", at["glaze"], at["slate"], lead)
+	}
+}
+
 func TestFoot(t *testing.T) {
 	p := bowls()
 	p.Frames[0].Settings.Samples = 16
