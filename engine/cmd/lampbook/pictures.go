@@ -4,6 +4,8 @@ import (
 	"fmt"
 	"io"
 	"path"
+	"path/filepath"
+	"regexp"
 	"slices"
 	"strings"
 
@@ -18,7 +20,7 @@ import (
 // pictures writes a run's finished frames. Its take may be called from several goroutines at once, each with a frame of its own.
 type pictures struct {
 	folder *runFolder
-	scene  string      // its file, as the plan names it
+	inside []typedFolder
 	plan   *model.Plan // free of the path under which the scene was named, so that the files are the same whatever it was
 	hasher *model.Hasher
 	on     []showing // by frame
@@ -37,9 +39,10 @@ type outcome struct {
 	blank   bool    // the camera sees nothing
 }
 
-func newPictures(folder *runFolder, p *model.Plan) *pictures {
-	scene, p := p.Scene, pathless(p)
-	w := &pictures{folder: folder, scene: scene, plan: p, hasher: model.NewHasher(p), on: onSheets(p), taken: make([]outcome, len(p.Frames))}
+func newPictures(folder *runFolder, p *model.Plan, assets []string) *pictures {
+	inside := foldersOf(p.Scene, assets)
+	p = pathless(p, inside)
+	w := &pictures{folder: folder, inside: inside, plan: p, hasher: model.NewHasher(p), on: onSheets(p), taken: make([]outcome, len(p.Frames))}
 	for i := range w.taken {
 		w.taken[i].state = report.Waiting
 	}
@@ -157,23 +160,41 @@ func paramLines(p *model.Plan) string {
 	return strings.Join(lines, "\n")
 }
 
-// pathless is a plan without the path under which its scene was named: only the file's name is left, also at the head of what made
-// frames fail. Pictures, sheets and hashes are made from it.
-func pathless(p *model.Plan) *model.Plan {
+// pathless is a plan without the path under which its scene was named: only the file's name is left, also in what made frames fail.
+// Pictures, sheets and hashes are made from it.
+func pathless(p *model.Plan, folders []typedFolder) *model.Plan {
 	out := *p
 	out.Scene = path.Base(p.Scene)
 	out.Frames = slices.Clone(p.Frames)
 	for i := range out.Frames {
-		out.Frames[i].Failure = shortened(p.Scene, p.Frames[i].Failure)
+		out.Frames[i].Failure = shortened(folders, p.Frames[i].Failure)
 	}
 	return &out
 }
 
-// shortened takes the path of the scene's folder out of a text.
-func shortened(scene, text string) string {
-	folder := path.Dir(scene)
-	if folder == "." || folder == "/" {
-		return text
+// typedFolder is a folder of the scene's files, as typed, and how pictures name it: which folder that is depends on where the run was
+// started, and pictures must not.
+type typedFolder struct{ typed, shown string }
+
+// foldersOf lists the folders that a scene's files lie in: its own, which needs no name, and those of --assets, each by its last name. A
+// folder inside another stands before it.
+func foldersOf(scene string, assets []string) []typedFolder {
+	folders := []typedFolder{{path.Dir(scene), ""}}
+	for _, a := range assets {
+		a = path.Clean(filepath.ToSlash(a))
+		folders = append(folders, typedFolder{a, path.Base(a) + "/"})
 	}
-	return strings.ReplaceAll(text, folder+"/", "")
+	folders = slices.DeleteFunc(folders, func(f typedFolder) bool { return f.typed == "." || f.typed == "/" })
+	slices.SortStableFunc(folders, func(a, b typedFolder) int { return len(b.typed) - len(a.typed) })
+	return folders
+}
+
+// shortened names the folders in a text as pictures do.
+func shortened(folders []typedFolder, text string) string {
+	for _, f := range folders {
+		name := regexp.QuoteMeta(f.typed)
+		text = regexp.MustCompile(`(^|[^\pL\pN_./-])`+name+`/`).ReplaceAllString(text, "${1}"+f.shown)
+		text = regexp.MustCompile(`, in `+name+`($|[^\pL\pN_./-])`).ReplaceAllString(text, "${1}") // no such file beside the scene, in …
+	}
+	return text
 }

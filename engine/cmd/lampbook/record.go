@@ -31,7 +31,7 @@ func writeRecord(j *job, w *pictures, sheets []report.SheetRecord, r *request, s
 	for i, o := range w.taken {
 		f := &p.Frames[i]
 		record.Frames = append(record.Frames, report.FrameRecord{
-			Name: f.Name, Tags: f.Tags, Hash: w.hasher.Frame(i).String(), State: o.state, Reason: shortened(w.scene, o.failure), Files: o.files, Settings: f.Settings,
+			Name: f.Name, Tags: f.Tags, Hash: w.hasher.Frame(i).String(), State: o.state, Reason: shortened(w.inside, o.failure), Files: o.files, Settings: f.Settings,
 			CameraRays: o.rays.CameraRays, ShadowRays: o.rays.ShadowRays, Samples: o.samples, Noise: o.noise, Seconds: o.seconds,
 		})
 	}

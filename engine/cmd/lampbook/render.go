@@ -47,7 +47,7 @@ func renderScene(ctx context.Context, r *request, v *view) error {
 
 	start := time.Now()
 	earlier := earlierFiles(folder)
-	w := newPictures(folder, j.plan)
+	w := newPictures(folder, j.plan, r.assets)
 	done, err := renderFrames(ctx, j, r, v, w)
 	v.summary = totals(done, start)
 	stopped := errors.Is(err, errStopped)

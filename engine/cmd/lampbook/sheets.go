@@ -135,7 +135,7 @@ func (w *pictures) tile(frame int, pass string) (sheet.Tile, error) {
 	o := w.taken[frame]
 	switch o.state {
 	case report.Failed:
-		return sheet.Tile{Failure: shortened(w.scene, o.failure)}, nil
+		return sheet.Tile{Failure: shortened(w.inside, o.failure)}, nil
 	case report.Waiting:
 		return sheet.Tile{Failure: "not rendered: the run was stopped"}, nil
 	}

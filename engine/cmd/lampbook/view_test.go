@@ -72,7 +72,7 @@ func followed(ctx context.Context, v *view, events ...run.Event) {
 		c <- e
 	}
 	close(c)
-	w := newPictures(&runFolder{dir: "out"}, p)
+	w := newPictures(&runFolder{dir: "out"}, p, nil)
 	w.taken[0].state = report.Done
 	v.follow(ctx, newMeter(len(p.Frames), casts), c, w.frameLine)
 }
