@@ -3,6 +3,7 @@ package main
 import (
 	"errors"
 	"io"
+	"io/fs"
 	"os"
 	"path/filepath"
 	"regexp"
@@ -12,7 +13,9 @@ import (
 
 	"github.com/spf13/pflag"
 
+	"lampbook/lua/api"
 	"lampbook/lua/host"
+	"lampbook/lua/prelude"
 	"lampbook/scenes"
 )
 
@@ -136,5 +139,44 @@ func TestReadmeScene(t *testing.T) {
 		if len(plan.Frames) != test.frames || len(plan.Sheets) != 1 || len(plan.Warnings) > 0 {
 			t.Errorf("%s: %d frames, %d sheets, remarks %v; want %d, 1, none", test.what, len(plan.Frames), len(plan.Sheets), plan.Warnings, test.frames)
 		}
+	}
+}
+
+// TestReadmeTableOfCalls: the table of calls names every function of the scene language and of the modules.
+func TestReadmeTableOfCalls(t *testing.T) {
+	text, err := os.ReadFile("../../../README.md")
+	if err != nil {
+		t.Fatal(err)
+	}
+	_, table, found := strings.Cut(string(text), "| call | gives |")
+	table, _, ends := strings.Cut(table, "\n\n")
+	if !found || !ends {
+		t.Fatal("README.md has no table of calls")
+	}
+	defined := regexp.MustCompile(`(?m)^(?:function (\w+(?:[.:]\w+)?)\(|(surfaces\.\w+) = surface\()`)
+	checked := 0
+	for _, files := range []fs.FS{api.Files(), prelude.Files()} {
+		names, err := fs.Glob(files, "*.lua")
+		if err != nil {
+			t.Fatal(err)
+		}
+		for _, name := range names {
+			source, err := fs.ReadFile(files, name)
+			if err != nil {
+				t.Fatal(err)
+			}
+			for _, m := range defined.FindAllStringSubmatch(string(source), -1) {
+				full := m[1] + m[2]
+				last := full[strings.LastIndexAny(full, ".:")+1:]
+				if !regexp.MustCompile("[`.:]" + last + "\\b").MatchString(table) {
+					t.Errorf("%s: README.md's table of calls has no %s", name, full)
+				}
+				checked++
+			}
+		}
+	}
+	const least = 80 // of 83 today; fewer would mean that the pattern misses some
+	if checked < least {
+		t.Errorf("%d functions were found, want at least %d", checked, least)
 	}
 }
