@@ -1,5 +1,5 @@
--- A catalogue from a table: a row a product, three views of each, a page a family. One mesh file is damaged: its frames fail alone, their
--- places on the sheet say why, and the exit status is 1.
+-- A catalogue from a table: a row a product, three views of each, a page a family. One mesh file is damaged on purpose: its frames fail
+-- alone, their places on the sheet say why, and the exit status is 1.
 local forms, rigs, stands, surfaces = require "forms", require "rigs", require "stands", require "surfaces"
 local sections = require "shapes.sections" -- a file of our own beside the scene: shapes/sections.lua
 
@@ -9,7 +9,8 @@ local bulb = color.kelvin(3000)
 local function product(row)
   local half, height = cm(row.width_cm) / 2, cm(row.height_cm)
   local finish = surfaces[row.finish](color(row.color))
-  local paper = surfaces.paper_shade():with{ emission = bulb:scaled(130) } -- nit; the white of a plate under these lights is about 250
+  -- Paper lit from within, in nit: under these lights a white card is about 400.
+  local paper = surfaces.paper_shade(color "#d2c4a8"):with{ emission = bulb:scaled(90) }
   if row.file ~= "" then
     local form = mesh.load(row.file, { unit = "cm", smooth = 15 })
     if row.shade == "paper" then return { place{ mesh = form, materials = { paper = paper } } } end -- the rest is as its .mtl says
@@ -34,15 +35,16 @@ local function product(row)
 end
 
 local views = { front = {0, 0.16, 1}, raised = {0.5, 0.75, 0.85}, above = {0, 1, 0.22} }
--- Rigs are sized to each product and give as much light to all, so one exposure serves: 0.4 stops over the meter, for a light, printed look.
-settings{ size = {288, 288}, samples = 32, exposure = rigs.three_point{}:meter{ at = {0, 0.1, 0}, facing = {-0.5, 0.6, 1} } + 0.4 }
+-- Rigs are sized to each product and give as much light to all, so one exposure serves.
+settings{ size = {240, 240}, samples = 32, exposure = rigs.three_point{}:meter{ at = {0, 0.1, 0}, facing = {-0.5, 0.6, 1} } }
 
 for _, row in ipairs(data.csv("products.csv", { numbers = { "width_cm", "height_cm", "flutes" }, text = "article" })) do
   local things = product(row)
   local size = math.max(cm(row.width_cm), cm(row.height_cm)) / 2
+  local ground = stands.cove{ radius = size }
   for _, view in ipairs{ "front", "raised", "above" } do
     frame{ tags = { family = row.family, product = row.article .. " " .. row.name, view = view },
-           things = { things, stands.cove{ radius = size } }, lights = rigs.three_point{ radius = size },
+           things = { things, ground }, lights = rigs.three_point{ radius = size },
            camera = camera.fit{ things = things, direction = views[view], margin = 0.12 } }
   end
 end

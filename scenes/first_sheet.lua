@@ -16,17 +16,17 @@ local bowl = pot{ {0, 0.3}, {2.1, 0.3}, {2.1, 0.3}, {2.3, 0}, {2.6, 0}, {2.6, 0}
 -- A softbox to the upper left and a little light from everywhere. Intensities are in candela per square metre (nit).
 local lights = rig{
   light.area{ name = "softbox", width = 0.5, height = 0.7, position = {-0.6, 0.7, 0.55}, target = {0, 0.1, 0}, intensity = 2500 },
-  light.ambient{ name = "room", intensity = 80 },
+  light.ambient{ name = "room", intensity = 50 },
 }
 
--- The meter is held where the pots stand: an 18 % grey card there would come out as 18 % grey in every picture.
+-- The meter is held where the pots stand: an 18 % grey card there would show as 18 % grey in every picture.
 settings{ size = {480, 360}, samples = 64, exposure = lights:meter{ at = {0, 0.1, 0}, facing = {0, 0.6, 1} } }
 
-local glazes = { oxblood = color "#74312a", celadon = color "#9dbfa0", slate = color "#56616b" }
+local glazes = { oxblood = color "#7a2a22", celadon = color "#7fa588", slate = color "#4a5866" }
 
 for step in sweep{ {"glaze", {"oxblood", "celadon", "slate"}}, {"gloss", geometric(4, 256, 4)} } do
   -- gloss is the exponent of the highlight. Normalized, a small bright highlight sends out as much light as a wide faint one.
-  local glaze = material.blinn_phong{ diffuse = glazes[step.glaze], specular = color.grey(0.08), shininess = step.gloss, normalized = true }
+  local glaze = material.blinn_phong{ diffuse = glazes[step.glaze], specular = color.grey(0.1), shininess = step.gloss, normalized = true }
   local pots = { place{ mesh = vase, material = glaze, at = {-0.06, 0, 0} }, place{ mesh = bowl, material = glaze, at = {0.085, 0, 0.05} } }
   frame{ tags = step, lights = lights, things = { pots, stands.table() },
          camera = camera.fit{ things = pots, direction = {0, 0.42, 1}, margin = 0.1 } }

@@ -9,9 +9,9 @@ local view = camera.fit{ things = { form }, direction = {0, 0.42, 1}, margin = 0
 
 settings{ size = {360, 320}, samples = 64, exposure = 0 }
 
--- Every lamp stands in one place, 87 cm from the middle of the form. The meter says by how many stops it would have to be brighter to
+-- Every lamp stands in one place, 88 cm from the middle of the form. The meter says by how many stops it would have to be brighter to
 -- show a grey card there as grey at an exposure of 0, and so bright it is made: what differs between two pictures is the kind of light.
-local from, middle, facing = {-0.42, 0.75, 0.4}, {0, 0.1, 0}, {-0.42, 0.65, 0.4}
+local from, middle, facing = {-0.36, 0.81, 0.38}, {0, 0.1, 0}, {-0.36, 0.71, 0.38}
 local function metered(lamp) return lamp:with{ stops = rig{ lamp }:meter{ at = middle, facing = facing } } end
 
 local function show(tags, ...)
@@ -21,7 +21,7 @@ end
 local room = light.ambient{ name = "room", intensity = 0.1 } -- a tenth, so that no shadow is black
 
 -- Lux: parallel light from no place, the same everywhere.
-show({ kind = "directional" }, metered(light.directional{ direction = {0.42, -0.65, -0.4} }), room)
+show({ kind = "directional" }, metered(light.directional{ direction = {0.36, -0.71, -0.38} }), room)
 -- Candela: from one point to all sides, weaker with the square of the distance.
 show({ kind = "point" }, metered(light.point{ position = from }), room)
 -- Candela: all of it within inner, nothing beyond outer, half angles in degrees.

@@ -38,7 +38,7 @@ var examples = map[string]struct {
 }
 
 // damagedFile is the mesh of the catalogue that does not load, and the line at which it breaks off.
-const damagedFile = "cruet.obj:44"
+const damagedFile = "damaged.obj:44"
 
 // evaluated copies the examples into a folder of their own, as the program writes them, and evaluates one there.
 func evaluated(t *testing.T, name string, o host.Options) (*model.Plan, *mesh.Library) {

@@ -21,7 +21,7 @@ local handle = forms.tube{ radius = 0.0075, tip = 0.006, flat = 0.62, path = for
 local band = mesh.lathe{ segments = 160, profile = forms.smooth{ {0.0592, 0.052}, {0.0601, 0.062}, {0.0596, 0.074}, {0.057, 0.086} } }
 local button = mesh.sphere{ radius = 0.0042, segments = 32 }
 
-local glaze = surfaces.gloss_glaze(color "#8fb0ad"):with{ specular = color.grey(0.1) }
+local glaze = surfaces.gloss_glaze(color "#8fb0ad"):with{ specular = color.grey(0.16), shininess = 140 }
 
 local function pitcher(turn)
   local things = {
@@ -37,16 +37,17 @@ local function pitcher(turn)
   return things
 end
 
-local lights = rigs.three_point{ radius = 0.11, centre = {0, 0.1, 0}, softness = 1.8 }
--- One exposure for all views, 0.4 stops over the meter, for a light, printed look.
-settings{ size = {208, 240}, samples = 16, exposure = lights:meter{ at = {0, 0.1, 0}, facing = {-0.4, 0.4, 1} } + 0.4 }
-local view = camera.fit{ things = pitcher(0), over = turntable{}, direction = {0, 0.35, 1}, margin = 0.07 }
+local lights = rigs.three_point{ radius = 0.11, centre = {0, 0.1, 0}, key_up = 32, softness = 1.2 }
+-- One exposure for all views, metered where the pitcher stands.
+settings{ size = {192, 224}, samples = 16, exposure = lights:meter{ at = {0, 0.1, 0}, facing = {-0.4, 0.4, 1} } }
+local ground = stands.cove{ distance = 1.3, bend = 0.9 }
+local view = camera.fit{ things = pitcher(0), over = turntable{}, direction = {0, 0.25, 1}, margin = 0.07 }
 
 for angle in turntable{ frames = views } do
-  frame{ tags = { move = "object", turn_deg = angle }, things = { pitcher(angle), stands.cove() }, lights = lights, camera = view }
+  frame{ tags = { move = "object", turn_deg = angle }, things = { pitcher(angle), ground }, lights = lights, camera = view }
 end
 for angle in turntable{ frames = views } do
-  frame{ tags = { move = "lights", turn_deg = angle }, things = { pitcher(-35), stands.cove() }, lights = lights:turned(angle), camera = view }
+  frame{ tags = { move = "lights", turn_deg = angle }, things = { pitcher(-35), ground }, lights = lights:turned(angle), camera = view }
 end
 
 sheet{ title = "Pitcher: the object turns", where = { move = "object" }, columns = "turn_deg", per_line = 9 }

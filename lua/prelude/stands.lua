@@ -82,7 +82,7 @@ function stands.cove(given)
 end
 
 --- A grey reference sphere, perfectly matt: it shows exposure, the light's direction and its colour. 18 % reflects as the grey card does;
---- where it faces a metered light it reads 0.18, L* 49.5, sRGB 118 (with tone = "neutral" it shows deeper: that curve takes off
+--- where it faces a metered light it shows as 0.18, L* 49.5, sRGB 118 (deeper with tone = "neutral": that curve takes off
 --- 0.04 for a reflection that matt things lack).
 ---   radius        its own, > 0; default 0.03
 ---   at            where it stands, its lowest point; default the origin
@@ -97,7 +97,7 @@ function stands.grey_sphere(given)
 end
 
 --- Reflectances of the ramp's patches: one stop a step through the grey card. Evenly lit, and exposed so that the grey card reads 0.18,
---- they read, before the tone curve or with tone = "clip",
+--- they show with the default tone as
 ---   reflectance   0.0225   0.045   0.09   0.18   0.36   0.72
 ---   L*            16.7     25.3    36.0   49.5   66.5   88.0
 ---   sRGB          41       60      85     118    162    221
