@@ -37,7 +37,7 @@
 camera = {}
 
 ---@class camera.fit.keys
----@field things thing[] what to frame, at least one; backdrops among them are left out
+---@field things thing|thing[] what to frame, at least one; backdrops among them are left out
 ---@field direction? point from the things towards the camera, any length but 0; default {0, 0.4, 1}
 ---@field up? point which way is up in the picture, not along direction; default {0, 1, 0}
 ---@field margin? number free border on the tightest side, as a share of the picture's height, 0 to 0.45; default 0.1
