@@ -6,7 +6,7 @@ local form = mesh.test_form{ segments = 160 } -- the workshop's form for judging
 -- Directional light has no size, so that what is seen is the highlight's own width. Lux for directional, nit for ambient.
 local lights = rig{
   light.directional{ name = "sun", direction = {0.42, -0.66, -0.85}, intensity = 900 },
-  light.ambient{ name = "room", intensity = 90 },
+  light.ambient{ name = "room", intensity = 140 },
 }
 
 -- A pass is one component of the picture as a plane of its own. They sum to the picture, before the tone curve.
@@ -21,7 +21,7 @@ for _, shininess in ipairs{ 1, 30, 255 } do
     diffuse = color "#3f6f96",  -- what it scatters: brightest where it faces the light, the same from wherever one looks
     specular = color.grey(0.5), -- what it reflects: depends on where light and eye are
     shininess = shininess,      -- how tightly: 1 is a veil over all that is lit, 30 a wide gleam, 255 a dot
-    emission = color "#30c890":scaled(26), -- its own glow in nit: the same all over, and it lights nothing else
+    emission = color "#30c890":scaled(32), -- its own glow in nit: the same all over, and it lights nothing else
   }
   local subject = place{ mesh = form, material = glaze }
   frame{ tags = { shininess = shininess }, lights = lights, things = { subject, stands.table() },
