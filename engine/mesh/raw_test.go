@@ -163,7 +163,7 @@ func TestLibrary(t *testing.T) {
 	sphere := model.Mesh{Kind: model.MeshSphere, Size: [3]float64{1}, Segments: 8}
 	other := sphere
 	other.Size[0] = 2
-	if get(sphere) != get(sphere) || get(sphere) == get(other) {
+	if first := get(sphere); get(sphere) != first || get(other) == first {
 		t.Error("equal descriptions must give one mesh, different ones two")
 	}
 	a, b, c := cubeTables(), cubeTables(), cubeTables()

@@ -52,7 +52,7 @@ func (a *args) newSheet() {
 		}
 	}
 	for _, c := range a.tagTable("where") {
-		s.Where = append(s.Where, model.TagChoice{Key: c.Key, Values: c.Values})
+		s.Where = append(s.Where, model.TagChoice(c))
 	}
 	s.Order = a.tagTable("order")
 	if a.text("caption", &s.Caption) && (!readable(s.Caption) || len(s.Caption) > maxTagLength) {

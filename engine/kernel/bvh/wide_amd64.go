@@ -2,6 +2,8 @@
 
 package bvh
 
+//lint:file-ignore U1000 the assembly uses fields of lanes that no Go code does
+
 import (
 	"os"
 	"unsafe"
