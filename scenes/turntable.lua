@@ -37,9 +37,9 @@ local function pitcher(turn)
   return things
 end
 
-local lights = rigs.three_point{ radius = 0.11, centre = {0, 0.1, 0}, key_up = 32, softness = 1.2 }
+local lights = rigs.three_point{ radius = 0.11, centre = {0, 0.1, 0}, key_up = 32, softness = 0.9 }
 -- One exposure for all views, metered where the pitcher stands.
-settings{ size = {192, 224}, samples = 16, exposure = lights:meter{ at = {0, 0.1, 0}, facing = {-0.4, 0.4, 1} } }
+settings{ size = {176, 206}, samples = 24, exposure = lights:meter{ at = {0, 0.1, 0}, facing = {-0.4, 0.4, 1} } }
 local ground = stands.cove{ distance = 1.3, bend = 0.9 }
 local view = camera.fit{ things = pitcher(0), over = turntable{}, direction = {0, 0.25, 1}, margin = 0.07 }
 
