@@ -22,7 +22,7 @@ const thin = 16
 func (pl *placed) offSliver(edge2 float32, n geom.Vec3) float32 {
 	edge := float32(math.Sqrt(float64(edge2)))
 	area := float32(math.Sqrt(float64(n.Dot(n))))
-	return pl.stretch * min(float32(edge*edge2)/area*(1.0/(1<<22)), edge*(1.0/1024))
+	return float32(pl.stretch * min(float32(edge*edge2)/area*(1.0/(1<<22)), edge*(1.0/1024)))
 }
 
 // surfaceOf returns the cast's surface that a hit lies on.
@@ -73,7 +73,7 @@ func (c *cast) interact(h *bvh.Hit, ray *geom.Ray, pt *hit) (surface int32) {
 			}
 		}
 	}
-	off := max(pl.reach, abs(pt.p.X), abs(pt.p.Y), abs(pt.p.Z)) * offGround
+	off := float32(max(pl.reach, abs(pt.p.X), abs(pt.p.Y), abs(pt.p.Z)) * offGround)
 	if edge2 := max(b.Sub(a).Dot(b.Sub(a)), d.Sub(a).Dot(d.Sub(a))); float32(edge2*edge2) > thin*thin*ngObject.Dot(ngObject) {
 		off += pl.offSliver(edge2, ngObject)
 	}

@@ -245,7 +245,7 @@ func (b *builder) divide(j *job, table *binTable) (left, right job, divided bool
 		best = bestCut(table, j.n, used, &scale, b.costs)
 	}
 	area := j.bounds.area()
-	if j.n == 1 || j.n <= maxLeaf && (best.axis < 0 || area*b.costs.tests(j.n) <= best.cost+b.costs.step*area) {
+	if j.n == 1 || j.n <= maxLeaf && (best.axis < 0 || area*b.costs.tests(j.n) <= best.cost+float32(b.costs.step*area)) {
 		nd.first, nd.count = uint32(j.first), uint32(j.n)
 		return left, right, false
 	}

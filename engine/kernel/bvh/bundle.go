@@ -74,7 +74,7 @@ func (s *shaft) enclose(rays []geom.Ray, bounds geom.Box, slack float32) int {
 	for k := range 3 {
 		reach = max(reach, abs32(lo[k]), abs32(hi[k]), abs32(e.orgMin[k]), abs32(e.orgMax[k]))
 	}
-	margin := reach * 0x1p-17 * (1 + steepest) * slack
+	margin := float32(reach * 0x1p-17 * (1 + steepest) * slack)
 	s.z0, s.z1 = lo[axis], hi[axis]
 	s.backward = e.allNegative>>axis&1 == 1
 	if !s.backward {

@@ -53,7 +53,7 @@ func compress(c RGB, start float32) RGB {
 	newPeak := 1 - float32(d*d)/(peak+(d-start))
 	c = c.Scale(newPeak / peak)
 	g := 1 / (float32(desaturation*(peak-newPeak)) + 1)
-	return c.Scale(g).Add(Grey(newPeak * (1 - g)))
+	return c.Scale(g).Add(Grey(float32(newPeak * (1 - g))))
 }
 
 // Reinhard compresses luminance by L(1 + L/white²)/(1 + L), so that luminance white becomes 1; white > 0. Hue and
