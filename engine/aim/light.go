@@ -105,7 +105,7 @@ func TurnLights(lights []model.Light, deg float64) []model.Light {
 // DefaultLights are for a frame that names none: a large soft key from the upper left front, and a third as much from all around, for
 // things within radius metres of centre. The key delivers 1000 lux at the centre; three quarters of the light come from it.
 func DefaultLights(centre [3]float64, radius float64) []model.Light {
-	radius = max(radius, 1e-3)
+	radius = max(radius, 1e-9)
 	c := vec(centre)
 	away := geom.Vec3d{X: -0.7, Y: 1, Z: 0.75}.Unit()
 	const distance, edge = 5.0, 3.0 // in radii

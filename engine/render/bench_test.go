@@ -130,7 +130,7 @@ func record(b *testing.B, e *Engine, plan *model.Plan, i int) (*cast, *tape) {
 		b.Fatal(err)
 	}
 	var rays tape
-	var w worker
+	w := worker{ctx: context.Background()}
 	var sums pixelSums
 	w.sums = &sums
 	s := c.settings

@@ -1,6 +1,8 @@
 package render
 
 import (
+	"context"
+
 	"lampbook/engine/kernel/bvh"
 	"lampbook/engine/kernel/geom"
 	"lampbook/engine/kernel/sample"
@@ -36,6 +38,7 @@ type hit struct {
 
 // worker is one goroutine's scratch.
 type worker struct {
+	ctx     context.Context
 	first   uint32 // first sample of the batch at hand
 	batch   int    // and how many it has
 	walker  bvh.Walker
@@ -114,6 +117,9 @@ func (c *cast) castPixel(w *worker, sums *pixelSums, x, y, first, end int) {
 	w.sums = sums
 	batch := min(maxCameraBatch, max(1, maxShadowBatch/s.LightSamples))
 	for ; first < end; first += batch {
+		if w.ctx.Err() != nil {
+			return // the picture is thrown away; at many samples and lights a pixel alone takes seconds
+		}
 		c.castCamera(w, px, x, y, uint32(first), min(batch, end-first))
 		if len(w.points) == 0 {
 			continue

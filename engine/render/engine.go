@@ -101,13 +101,16 @@ func (c *cast) render(ctx context.Context, o Options) ([]*film, Stats, error) {
 	tiles := tilesOf(c.settings.Width, c.settings.Height)
 	threads = min(threads, len(tiles))
 	workers := make([]worker, threads)
+	for i := range workers {
+		workers[i].ctx = ctx
+	}
 	err := eachTile(ctx, threads, tiles, func(n int, t tile) {
 		w := &workers[n]
 		before := w.stats
 		for y := t.y0; y < t.y1; y += blockSide {
 			for x := t.x0; x < t.x1; x += blockSide {
 				if ctx.Err() != nil {
-					return // eachTile says so; at many samples a tile alone takes seconds
+					return // eachTile says so
 				}
 				c.drawBlock(w, films, tile{x, y, min(x+blockSide, t.x1), min(y+blockSide, t.y1)})
 			}

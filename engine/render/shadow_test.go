@@ -3,6 +3,7 @@ package render
 import (
 	"fmt"
 	"math"
+	"math/rand/v2"
 	"testing"
 
 	"lampbook/engine/kernel/geom"
@@ -350,6 +351,41 @@ func TestSlivers(t *testing.T) {
 		for i := range with {
 			if with[i] != without[i] {
 				t.Fatalf("scale %v: pixel %d, %d has %v, without shadows %v", scale, i%64, i/64, with[i], without[i])
+			}
+		}
+	}
+}
+
+// TestConvexFormsShadeNothing lights convex forms, at random places, turns and scales, from random sides: with and without shadows every
+// pixel must be the same.
+func TestConvexFormsShadeNothing(t *testing.T) {
+	const seed = 2
+	rng := rand.New(rand.NewPCG(1, seed))
+	scatter := func() [3]float64 { return [3]float64{rng.Float64() - 0.5, rng.Float64() - 0.5, rng.Float64() - 0.5} }
+	forms := []model.Mesh{
+		{Kind: model.MeshPlane, Size: [3]float64{1, 0, 1}}, {Kind: model.MeshBox, Size: [3]float64{1, 1, 1}},
+		{Kind: model.MeshSphere, Size: [3]float64{0.5}, Segments: 24}, {Kind: model.MeshCylinder, Size: [3]float64{0.5, 1}, Segments: 24},
+	}
+	for n := range 120 {
+		scale := []float64{0.001, 1, 30, 1000, 10000}[n%5]
+		var s studio
+		form := s.thing(forms[n/5%4], matt(0.8))
+		place, from, sun := scatter(), scatter(), scatter()
+		eye := [3]float64{}
+		for i := range 3 {
+			form.Scale[i] = scale * (0.2 + rng.Float64())
+			form.Turn[i] = 360 * rng.Float64()
+			form.At[i] = 2 * scale * place[i]
+			eye[i] = form.At[i] + 6*scale*from[i]
+		}
+		shot := func(noShadow bool) []float32 {
+			l := model.Light{Name: "sun", Kind: model.LightDirectional, Intensity: 3, Direction: sun, NoShadow: noShadow}
+			return s.shoot(t, lens(eye, form.At, 60), square(24, 4), s.lights(l), form).Plane("G")
+		}
+		with, without := shot(false), shot(true)
+		for i := range with {
+			if with[i] != without[i] {
+				t.Fatalf("case %d of seed %d, scale %v: pixel %d, %d has %v, without shadows %v", n, seed, scale, i%24, i/24, with[i], without[i])
 			}
 		}
 	}
