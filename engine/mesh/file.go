@@ -5,9 +5,12 @@ import (
 	"crypto/sha256"
 	"encoding/binary"
 	"encoding/hex"
+	"errors"
 	"fmt"
 	"hash"
+	"io/fs"
 	"path"
+	"slices"
 	"strings"
 
 	"lampbook/engine/model"
@@ -103,6 +106,7 @@ type libraries struct {
 	folder string
 	read   Reader
 	seen   map[string]bool
+	absent []string // names, as the file gives them, that lead nowhere
 }
 
 // library is a material library as it was read.
@@ -117,7 +121,7 @@ func newLibraries(objName string, read Reader) *libraries {
 
 // find returns the libraries that a mtllib statement names and that have not been found before. The statement is one name,
 // which may have blanks in it; where there is no such file, it is several names that end in ".mtl". A backslash divides folders
-// as a slash does.
+// as a slash does. A library that is not there is noted in absent: the form does not need it.
 func (l *libraries) find(names []byte) ([]library, error) {
 	whole := strings.ReplaceAll(string(bytes.TrimSpace(names)), `\`, "/")
 	if whole == "" {
@@ -132,17 +136,31 @@ func (l *libraries) find(names []byte) ([]library, error) {
 	}
 	several := splitNames(whole)
 	if len(several) < 2 {
-		return nil, fmt.Errorf("mtllib %s: %w", quote([]byte(whole)), err)
+		return nil, l.without(whole, err)
 	}
 	var all []library
 	for _, name := range several {
 		one, err := l.one(name)
 		if err != nil {
-			return nil, fmt.Errorf("mtllib %s: %w", quote([]byte(name)), err)
+			if err := l.without(name, err); err != nil {
+				return nil, err
+			}
+			continue
 		}
 		all = append(all, one...)
 	}
 	return all, nil
+}
+
+// without notes a library that is not there; any other mistake in reading it stays one.
+func (l *libraries) without(name string, err error) error {
+	if !errors.Is(err, fs.ErrNotExist) {
+		return fmt.Errorf("mtllib %s: %w", quote([]byte(name)), err)
+	}
+	if !slices.Contains(l.absent, name) {
+		l.absent = append(l.absent, name)
+	}
+	return nil
 }
 
 // one reads a library, unless it has been read before.

@@ -15,6 +15,8 @@ type Mesh struct {
 	SlotNames []string     // at least one; material names where a file gives them, else ""
 	// Materials holds what a file says of each slot; nil where it says nothing.
 	Materials []model.Material
+	// Notes are remarks for the scene's author: what the file names and does not have.
+	Notes []string
 }
 
 // Bytes is the memory that the mesh's tables hold.

@@ -29,6 +29,9 @@ func (o *objReader) finish() error {
 		return &PosError{file, 0, fmt.Errorf("every face names a position twice: no surface is left")}
 	}
 	o.out.Slots = slots
+	for _, name := range o.libraries.absent {
+		o.out.Notes = append(o.out.Notes, fmt.Sprintf("%s: mtllib %s: no such file; surfaces without a material of the scene's are neutral grey", file, quote([]byte(name))))
+	}
 	o.normalsFor(given, groups)
 	if len(o.described) > 0 {
 		for _, name := range o.out.SlotNames {

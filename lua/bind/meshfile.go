@@ -57,11 +57,16 @@ func (a *args) loadForm(f *form, path string) {
 		return
 	}
 	f.File = file
+	var m *mesh.Mesh
 	if f.FileHash, err = a.env.hashOf(file); err == nil {
-		_, err = a.env.Meshes.Get(f.Mesh)
+		m, err = a.env.Meshes.Get(f.Mesh)
 	}
 	if err != nil {
 		a.formFails(f, err)
+		return
+	}
+	for _, note := range m.Notes {
+		a.env.warn(a.env.callSite(a.l), "mesh.load: "+note)
 	}
 }
 
