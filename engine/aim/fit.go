@@ -51,18 +51,6 @@ func Fit(f FitSpec) (model.Camera, error) {
 	}
 	upward := right.Cross(forward)
 
-	var pts []geom.Vec3d
-	for _, t := range f.Things {
-		if f.Sweep {
-			pts = append(pts, swept(t)...)
-		} else {
-			pts = append(pts, Points(t)...)
-		}
-	}
-	if len(pts) == 0 {
-		return model.Camera{}, errors.New("nothing to frame: the things have no triangles")
-	}
-
 	// Half extents of the picture at distance 1 (perspective), less the margin on each side.
 	inner := 1 - 2*f.Margin
 	innerAcross := 1 - 2*f.Margin/f.Aspect
@@ -77,20 +65,32 @@ func Fit(f FitSpec) (model.Camera, error) {
 		return model.Camera{}, fmt.Errorf("margin %v leaves no room in a picture this narrow", f.Margin)
 	}
 
-	// Largest offsets of the points along the outward normals of the four sides, in the camera's axes.
+	// Largest offsets of the points along the outward normals of the four sides, in the camera's axes, and the points' box.
 	low := math.Inf(-1)
 	rightMost, leftMost, topMost, bottomMost, near := low, low, low, low, math.Inf(1)
-	for _, p := range pts {
+	lo, hi := geom.Vec3d{X: math.Inf(1), Y: math.Inf(1), Z: math.Inf(1)}, geom.Vec3d{X: low, Y: low, Z: low}
+	take := func(p geom.Vec3d) {
 		x, y, z := right.Dot(p), upward.Dot(p), forward.Dot(p)
 		rightMost = max(rightMost, x-float64(tanX*z))
 		leftMost = max(leftMost, -x-float64(tanX*z))
 		topMost = max(topMost, y-float64(tanY*z))
 		bottomMost = max(bottomMost, -y-float64(tanY*z))
 		near = min(near, z)
+		lo = geom.Vec3d{X: min(lo.X, p.X), Y: min(lo.Y, p.Y), Z: min(lo.Z, p.Z)}
+		hi = geom.Vec3d{X: max(hi.X, p.X), Y: max(hi.Y, p.Y), Z: max(hi.Z, p.Z)}
+	}
+	for _, t := range f.Things {
+		if f.Sweep {
+			eachSwept(t, take)
+		} else {
+			eachPoint(t, take)
+		}
+	}
+	if math.IsInf(near, 1) {
+		return model.Camera{}, errors.New("nothing to frame: the things have no triangles")
 	}
 	ex, ey := (rightMost-leftMost)/2, (topMost-bottomMost)/2
-	centre, radius := boundsOf(pts)
-	radius = max(radius, 1e-6)
+	centre, radius := lo.Add(hi).Scale(0.5), max(hi.Sub(lo).Len()/2, 1e-6)
 	zMiddle := forward.Dot(centre)
 	var ez float64
 	if f.Projection == model.Orthographic {
@@ -111,56 +111,75 @@ func Fit(f FitSpec) (model.Camera, error) {
 // shown is a point as scenes write it.
 func shown(p [3]float64) string { return fmt.Sprintf("{%v, %v, %v}", p[0], p[1], p[2]) }
 
-// boundsOf returns the centre and half diagonal of the points' box.
-func boundsOf(pts []geom.Vec3d) (centre geom.Vec3d, radius float64) {
-	lo, hi := pts[0], pts[0]
-	for _, p := range pts {
-		lo = geom.Vec3d{X: min(lo.X, p.X), Y: min(lo.Y, p.Y), Z: min(lo.Z, p.Z)}
-		hi = geom.Vec3d{X: max(hi.X, p.X), Y: max(hi.Y, p.Y), Z: max(hi.Z, p.Z)}
-	}
-	return lo.Add(hi).Scale(0.5), hi.Sub(lo).Len() / 2
-}
+// ring is the circle that a point of a turning thing runs through: its radius and height.
+type ring struct{ r, y float64 }
 
-// swept returns points on the circles that the thing's outermost points run through in a turn about the vertical through its At.
-// Only the upper hull of (radius, height) can matter to a fit, so the rest is dropped first.
-func swept(t Thing) []geom.Vec3d {
+// eachSwept calls take for points on the circles that the thing's outermost points run through in a turn about the vertical through its At.
+// Only the outer chain of (height, radius) can matter to a fit. A rough chain of some of the points comes first, so that most others are
+// seen to lie within it without being sorted.
+func eachSwept(t Thing, take func(geom.Vec3d)) {
 	axis := t.Placement.At
-	type ring struct{ r, y float64 }
-	var rings []ring
-	for _, p := range Points(t) {
-		rings = append(rings, ring{geom.Vec3d{X: p.X - axis[0], Z: p.Z - axis[2]}.Len(), p.Y})
-	}
-	slices.SortFunc(rings, func(a, b ring) int {
-		switch {
-		case a.y != b.y:
-			return cmpFloat(a.y, b.y)
-		default:
-			return cmpFloat(a.r, b.r)
+	ringOf := func(p geom.Vec3d) ring { return ring{geom.Vec3d{X: p.X - axis[0], Z: p.Z - axis[2]}.Len(), p.Y} }
+	stride := len(t.Mesh.Positions)/1024 + 1
+	var rough []ring
+	n := 0
+	eachPoint(t, func(p geom.Vec3d) {
+		if n%stride == 0 {
+			rough = append(rough, ringOf(p))
+		}
+		n++
+	})
+	rough = outerChain(rough)
+	outer := slices.Clone(rough)
+	eachPoint(t, func(p geom.Vec3d) {
+		if q := ringOf(p); !within(rough, q) {
+			outer = append(outer, q)
 		}
 	})
-	// Outer chain by Andrew's monotone scan: going up, keep left turns out (largest radius).
-	var hull []ring
-	for _, q := range rings {
-		for len(hull) > 0 && hull[len(hull)-1].y == q.y {
-			hull = hull[:len(hull)-1] // same height, smaller radius
-		}
-		for len(hull) > 1 {
-			a, b := hull[len(hull)-2], hull[len(hull)-1]
-			if float64((b.y-a.y)*(q.r-a.r))-float64((b.r-a.r)*(q.y-a.y)) < 0 {
-				break
-			}
-			hull = hull[:len(hull)-1]
-		}
-		hull = append(hull, q)
-	}
-	var pts []geom.Vec3d
-	for _, h := range hull {
+	for _, h := range outerChain(outer) {
 		for i := range sweepSteps {
 			sin, cos := num.SinCosWide(2 * math.Pi * float64(i) / sweepSteps)
-			pts = append(pts, geom.Vec3d{X: axis[0] + float64(h.r*cos), Y: h.y, Z: axis[2] + float64(h.r*sin)})
+			take(geom.Vec3d{X: axis[0] + float64(h.r*cos), Y: h.y, Z: axis[2] + float64(h.r*sin)})
 		}
 	}
-	return pts
+}
+
+// outerChain sorts the rings by height and returns those on the outer side of their convex hull, by Andrew's monotone scan.
+func outerChain(rings []ring) []ring {
+	slices.SortFunc(rings, func(a, b ring) int {
+		if a.y != b.y {
+			return cmpFloat(a.y, b.y)
+		}
+		return cmpFloat(a.r, b.r)
+	})
+	var chain []ring
+	for _, q := range rings {
+		for len(chain) > 0 && chain[len(chain)-1].y == q.y {
+			chain = chain[:len(chain)-1] // same height, smaller radius
+		}
+		for len(chain) > 1 && outside(chain[len(chain)-2], q, chain[len(chain)-1]) <= 0 {
+			chain = chain[:len(chain)-1]
+		}
+		chain = append(chain, q)
+	}
+	return chain
+}
+
+// outside is above 0 if p lies farther out than the line from a to b, a lower than b.
+func outside(a, b, p ring) float64 {
+	return float64((b.y-a.y)*(p.r-a.r)) - float64((b.r-a.r)*(p.y-a.y))
+}
+
+// within reports whether q lies inside an outer chain, or on it.
+func within(chain []ring, q ring) bool {
+	i, _ := slices.BinarySearchFunc(chain, q.y, func(c ring, y float64) int { return cmpFloat(c.y, y) })
+	switch {
+	case i == len(chain) || i == 0 && chain[0].y != q.y:
+		return false // above or below it
+	case chain[i].y == q.y:
+		return q.r <= chain[i].r
+	}
+	return outside(chain[i-1], chain[i], q) <= 0
 }
 
 func cmpFloat(a, b float64) int {

@@ -2,6 +2,7 @@ package aim
 
 import (
 	"math"
+	"slices"
 	"testing"
 
 	"lampbook/engine/kernel/geom"
@@ -38,6 +39,12 @@ func project(c model.Camera, aspect float64, p geom.Vec3d) (x, y, depth float64)
 	return d.Dot(r) / halfX, d.Dot(u) / (halfX / aspect), depth
 }
 
+// pointsOf collects a thing's points.
+func pointsOf(t Thing) (pts []geom.Vec3d) {
+	eachPoint(t, func(p geom.Vec3d) { pts = append(pts, p) })
+	return pts
+}
+
 func TestFitTouchesTheMargin(t *testing.T) {
 	rapid.Check(t, func(t *rapid.T) {
 		coord := rapid.Float64Range(-2, 2)
@@ -67,7 +74,7 @@ func TestFitTouchesTheMargin(t *testing.T) {
 		limitX, limitY := 1-2*f.Margin/f.Aspect, 1-2*f.Margin
 		worst := 0.0
 		lo, hi := [2]float64{9, 9}, [2]float64{-9, -9}
-		for _, p := range Points(f.Things[0]) {
+		for _, p := range pointsOf(f.Things[0]) {
 			x, y, depth := project(cam, f.Aspect, p)
 			if depth <= 0 {
 				t.Fatalf("%v is behind the camera", p)
@@ -94,7 +101,7 @@ func TestFitTouchesTheMargin(t *testing.T) {
 // nearTouching reports whether the camera stands as near as the rule allows: right before the nearest point.
 func nearTouching(cam model.Camera, f FitSpec) bool {
 	least := math.Inf(1)
-	for _, p := range Points(f.Things[0]) {
+	for _, p := range pointsOf(f.Things[0]) {
 		_, _, depth := project(cam, f.Aspect, p)
 		least = min(least, depth)
 	}
@@ -113,7 +120,7 @@ func TestFitSweepHoldsEveryTurn(t *testing.T) {
 	for deg := range 360 {
 		turned := thing
 		turned.Placement.Turn = [3]float64{0, float64(deg), 0}
-		for _, p := range Points(turned) {
+		for _, p := range pointsOf(turned) {
 			x, y, _ := project(cam, f.Aspect, p)
 			worst = max(worst, math.Abs(x)/(1-2*f.Margin/f.Aspect), math.Abs(y)/(1-2*f.Margin))
 		}
@@ -149,4 +156,32 @@ func TestFitErrors(t *testing.T) {
 	if cam, err := Fit(single); err != nil || cam.Position == cam.Target {
 		t.Errorf("a single point: %v, %v", cam, err)
 	}
+}
+
+// TestOuterChain compares the quick way to the outer chain with the plain one, on meshes of many points.
+func TestOuterChain(t *testing.T) {
+	rapid.Check(t, func(t *rapid.T) {
+		coord := rapid.Float64Range(-1, 1)
+		var pts [][3]float64
+		for range rapid.IntRange(1, 4000).Draw(t, "points") {
+			pts = append(pts, [3]float64{coord.Draw(t, "x"), coord.Draw(t, "y"), 0})
+		}
+		thing := cloud(pts...)
+		var plain []ring
+		for _, p := range pointsOf(thing) {
+			plain = append(plain, ring{math.Abs(p.X), p.Y})
+		}
+		want := outerChain(plain)
+		var got []ring
+		n := 0
+		eachSwept(thing, func(p geom.Vec3d) {
+			if n%sweepSteps == 0 {
+				got = append(got, ring{p.X, p.Y}) // at the angle 0 a circle stands at x = r
+			}
+			n++
+		})
+		if !slices.Equal(got, want) {
+			t.Fatalf("got %d rings, want %d", len(got), len(want))
+		}
+	})
 }

@@ -20,8 +20,8 @@ type Thing struct {
 	Placement model.Placement
 }
 
-// Points returns the positions of the thing's triangles in world space, in the mesh's order.
-func Points(t Thing) []geom.Vec3d {
+// eachPoint calls take for the positions of the thing's triangles in world space, in the mesh's order.
+func eachPoint(t Thing, take func(geom.Vec3d)) {
 	worldFromObject := WorldFromObject(t.Placement)
 	used := make([]bool, len(t.Mesh.Positions))
 	for _, tri := range t.Mesh.Triangles {
@@ -29,13 +29,11 @@ func Points(t Thing) []geom.Vec3d {
 			used[i] = true
 		}
 	}
-	pts := make([]geom.Vec3d, 0, len(used))
 	for i, p := range t.Mesh.Positions {
 		if used[i] {
-			pts = append(pts, worldFromObject.Point(p.Wide()))
+			take(worldFromObject.Point(p.Wide()))
 		}
 	}
-	return pts
 }
 
 // Bounds returns the centre of the things' axis-aligned box and the radius of the sphere around it, in world space, metres.
@@ -43,9 +41,7 @@ func Points(t Thing) []geom.Vec3d {
 func Bounds(things []Thing) (centre [3]float64, radius float64) {
 	box := geom.EmptyBox()
 	for _, t := range things {
-		for _, p := range Points(t) {
-			box = box.Extend(p.Narrow())
-		}
+		eachPoint(t, func(p geom.Vec3d) { box = box.Extend(p.Narrow()) })
 	}
 	if box.Empty() {
 		return centre, 0

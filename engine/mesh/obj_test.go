@@ -410,7 +410,7 @@ func TestForeignFiles(t *testing.T) {
 		"cube_compressed.obj": 12, "obj_empty.obj": "obj_empty.obj: no faces", "obj_points.obj": "obj_points.obj: no faces (f): 8 positions",
 		"obj_wireframe.obj": "obj_wireframe.obj: no faces (f): 8 positions, and 12 points, lines or curves", "face_in_group_name.obj": "no faces",
 		"face_in_group_name_mid_file.obj": "face_in_group_name_mid_file.obj:5: f: index 4: the file holds 0 normals",
-		"jacked.obj": 12, "joined_tetrahedra.obj": 8, "obj_with_no_face_in_chunk.obj": 1,
+		"jacked.obj":                      12, "joined_tetrahedra.obj": 8, "obj_with_no_face_in_chunk.obj": 1,
 		"polygonfaces.obj": 3, "singlevn.obj": 2,
 	}
 	seen := 0
