@@ -23,8 +23,8 @@ func csvCalls() []call {
 // Limits of a table of data.
 const (
 	maxTableBytes = 64 << 20
-	maxCells      = 4_000_000
 	maxColumns    = 1000
+	maxFields     = 32_768 // cells of one line, the empty ones included that spreadsheets leave at its end
 )
 
 // readData reads a file of data.
@@ -94,7 +94,8 @@ func dataCSV(a *args) lua.LValue {
 		o.decimal = rune(marks[mark][0])
 	}
 	file, content := a.readData()
-	header, records, err := parseCSV(content, o.separator)
+	count := tally{args: a}
+	header, records, err := parseCSV(content, o.separator, &count)
 	if err != nil {
 		a.failf("%s:%v", file, err)
 	}
@@ -103,7 +104,10 @@ func dataCSV(a *args) lua.LValue {
 
 	meta := a.rowMeta(header.cells)
 	rows := a.l.CreateTable(len(records), 0)
-	for _, rec := range records {
+	count.cells = 0 // the same cells again, now for Lua
+	for n, rec := range records {
+		records[n] = record{} // its texts live on in the row alone
+		count.add(tableCells + len(rec.cells))
 		row := a.l.CreateTable(0, len(header.cells))
 		for i, cell := range rec.cells {
 			v, err := cellValue(cell, isNumber[i], isCode[i], o.decimal)
@@ -173,14 +177,16 @@ func cellValue(cell string, number, code bool, decimal rune) (lua.LValue, error)
 
 // parseCSV reads a table: a header line, then rows of as many cells, trimmed. Rows without any text are left out.
 // Errors begin with the line: "7: …".
-func parseCSV(content []byte, separator rune) (header record, rows []record, err error) {
+func parseCSV(content []byte, separator rune, count *tally) (header record, rows []record, err error) {
 	r := csv.NewReader(bytes.NewReader(content))
 	r.Comma = separator
 	if separator == 0 {
 		r.Comma = guessSeparator(content)
 	}
 	r.FieldsPerRecord = -1
-	cells := 0
+	if line := overlong(content, byte(r.Comma)); line > 0 {
+		return header, nil, fmt.Errorf("%d: more than %d cells on one line: at most %d columns are accepted", line, maxFields, maxColumns)
+	}
 	for {
 		fields, err := r.Read()
 		if errors.Is(err, io.EOF) {
@@ -212,8 +218,8 @@ func parseCSV(content []byte, separator rune) (header record, rows []record, err
 		if err != nil {
 			return header, nil, err
 		}
-		if cells += len(fields); cells > maxCells || len(rows) == model.MaxFrames {
-			return header, nil, fmt.Errorf("%d: the table goes on: at most %d rows and %d cells are accepted", line, model.MaxFrames, maxCells)
+		if !count.add(tableCells+len(fields)) || len(rows) == model.MaxFrames {
+			return header, nil, fmt.Errorf("%d: the table goes on: at most %d rows and %d cells are accepted, where a row counts as %d more", line, model.MaxFrames, maxCells, tableCells)
 		}
 		rows = append(rows, record{line, fields})
 	}
@@ -221,6 +227,29 @@ func parseCSV(content []byte, separator rune) (header record, rows []record, err
 		return header, nil, errors.New("1: the table is empty: its first line must name the columns")
 	}
 	return header, rows, nil
+}
+
+// overlong is the first line with more than maxFields cells, which the reader would take in whole; 0 if none has. Line breaks and
+// separators in quotes do not count.
+func overlong(content []byte, separator byte) int {
+	line, begin, cells, quoted := 1, 1, 1, false
+	for _, b := range content {
+		if b == '\n' {
+			line++
+		}
+		switch {
+		case b == '"':
+			quoted = !quoted
+		case quoted:
+		case b == '\n':
+			begin, cells = line, 1
+		case b == separator:
+			if cells++; cells > maxFields {
+				return begin
+			}
+		}
+	}
+	return 0
 }
 
 // headerOf checks the names of the columns; nameless columns at the end, which spreadsheets leave behind, are dropped.

@@ -62,7 +62,7 @@ func TestParseCSV(t *testing.T) {
 		{"name\nx\n", "name 2:x", "one column"},
 		{"a,b\n\"say \"\"so\"\"\",2\n", `a|b 2:say "so"|2`, "RFC 4180: doubled quotes"},
 	} {
-		header, rows, err := parseCSV([]byte(c.content), 0)
+		header, rows, err := parseCSV([]byte(c.content), 0, &tally{args: &args{env: newEnv()}})
 		if err != nil {
 			t.Errorf("%q: %v", c.content, err)
 			continue
@@ -73,6 +73,46 @@ func TestParseCSV(t *testing.T) {
 		}
 		if got != c.want {
 			t.Errorf("%q\n got %q\nwant %q (%s)", c.content, got, c.want, c.source)
+		}
+	}
+}
+
+// TestDataIsCounted: a table counts as many values, and the host is asked while data is read.
+func TestDataIsCounted(t *testing.T) {
+	objects := func(n int) string { return "[" + strings.Repeat("{},", n-1) + "{}]" }
+	table := "a,b\n" + strings.Repeat("1,2\n", 50_000)
+	for _, c := range []struct {
+		file, content string
+		patience      int // steps until the host says no; 0: it never does
+		want          string
+	}{
+		{"a.json", objects(maxCells / (1 + tableCells)), 0, "data.json: a.json:1: more than 4000000 values, where a list or an object counts as 16"},
+		{"a.json", objects(100_000), 100_000, "data.json: the scene may use no more"},
+		{"a.json", "[" + strings.Repeat("1,", 500_000) + "1]", 100_000, "data.json: the scene may use no more"},
+		{"a.json", `{"a": {"_line": 1}}`, 0, ""},
+		{"a.csv", table, 500_000, "data.csv: the scene may use no more"},
+		{"a.csv", table, 1_000_000, "data.csv: the scene may use no more"}, // read, and not yet all given to Lua
+		{"a.csv", table, 0, ""},
+		{"a.csv", "a\n1" + strings.Repeat(",", maxFields), 0, "data.csv: a.csv:2: more than 32768 cells on one line: at most 1000 columns are accepted"},
+		{"a.csv", "a\n\"1" + strings.Repeat(",", maxFields) + "\"\n", 0, ""},
+	} {
+		e := newEnv()
+		e.Files = memFiles{c.file: c.content}
+		used, most := 0, 0
+		e.Charge = func(steps int) bool {
+			used, most = used+steps, max(most, steps)
+			return c.patience == 0 || used <= c.patience
+		}
+		call := "data.csv"
+		if c.file == "a.json" {
+			call = "data.json"
+		}
+		err := run(t, newState(t, e), call+`("`+c.file+`")`)
+		if got := strings.TrimPrefix(message(err), "scenes/test.lua:1: "); got != c.want {
+			t.Errorf("%.20q: got %q, want %q", c.content, got, c.want)
+		}
+		if most > chargeEach+maxColumns+tableCells || c.patience > 0 && used > c.patience+most {
+			t.Errorf("%.20q: %d steps between two questions, %d in all, %d were allowed", c.content, most, used, c.patience)
 		}
 	}
 }

@@ -45,6 +45,7 @@ type Env struct {
 	Overrides []Override              // in the order given; the last of one name counts
 	Forced    Forced                  // from the command line
 	Shipped   func(chunk string) bool // whether a chunk is a module of the program's own; nil: none is
+	Charge    func(steps int) bool    // counts work inside a binding and reports whether the scene may go on; nil: it always may
 
 	plan      model.Plan
 	settings  settings

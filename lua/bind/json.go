@@ -6,6 +6,7 @@ import (
 	"errors"
 	"fmt"
 	"io"
+	"slices"
 
 	lua "github.com/yuin/gopher-lua"
 )
@@ -20,7 +21,7 @@ const maxJSONDepth = 64
 // know their line.
 func dataJSON(a *args) lua.LValue {
 	file, content := a.readData()
-	r := &jsonReader{args: a, content: content, dec: json.NewDecoder(bytes.NewReader(content))}
+	r := &jsonReader{args: a, content: content, dec: json.NewDecoder(bytes.NewReader(content)), tally: tally{args: a}, isKnown: map[string]bool{}}
 	r.dec.UseNumber()
 	v, err := r.value(0)
 	if err == nil {
@@ -31,7 +32,7 @@ func dataJSON(a *args) lua.LValue {
 	if err != nil {
 		a.failf("%s:%d: %v", file, r.line(), jsonProblem(err))
 	}
-	r.rows(v)
+	r.rows()
 	return v
 }
 
@@ -40,11 +41,21 @@ type jsonReader struct {
 	args    *args
 	content []byte
 	dec     *json.Decoder
-	cells   int
-	lines   map[*lua.LTable]int // where objects of the outermost list begin
-	nulls   map[*lua.LTable][]string
+	tally   tally
+	values  []lua.LValue // of the lists and objects that are open, outermost first
+	names   []string     // the fields of values, "" in a list
+	listed  bool         // the outermost value is a list, whose objects are rows
+	objects []jsonObject // the rows
+	known   []string     // their fields, in the order of first appearance
+	isKnown map[string]bool
 	counted int // bytes whose line breaks have been counted
 	breaks  int
+}
+
+// jsonObject is a row and the line where it begins.
+type jsonObject struct {
+	table *lua.LTable
+	line  int
 }
 
 // line is the line that the decoder has come to.
@@ -73,8 +84,8 @@ func (r *jsonReader) value(depth int) (lua.LValue, error) {
 	if depth > maxJSONDepth {
 		return nil, fmt.Errorf("lists and objects stand in one another deeper than %d", maxJSONDepth)
 	}
-	if r.cells++; r.cells > maxCells {
-		return nil, fmt.Errorf("more than %d values", maxCells)
+	if !r.tally.add(1) {
+		return nil, errTooManyValues
 	}
 	token, err := r.dec.Token()
 	if err != nil {
@@ -100,8 +111,15 @@ func (r *jsonReader) value(depth int) (lua.LValue, error) {
 	return lua.LNil, nil
 }
 
+var errTooManyValues = fmt.Errorf("more than %d values, where a list or an object counts as %d", maxCells, tableCells)
+
+// array reads a list. Its elements wait in values until their number is known, so that the table holds no more than them.
 func (r *jsonReader) array(depth int) (lua.LValue, error) {
-	list := r.args.l.NewTable()
+	if !r.tally.add(tableCells) {
+		return nil, errTooManyValues
+	}
+	r.listed = r.listed || depth == 0
+	first := len(r.values)
 	for r.dec.More() {
 		v, err := r.value(depth + 1)
 		if err != nil {
@@ -110,82 +128,98 @@ func (r *jsonReader) array(depth int) (lua.LValue, error) {
 		if v == lua.LNil {
 			return nil, errors.New("null in a list: a Lua list has no gaps")
 		}
+		r.keep("", v)
+	}
+	list := r.args.l.CreateTable(len(r.values)-first, 0)
+	for _, v := range r.values[first:] {
 		list.Append(v)
 	}
+	r.drop(first)
 	_, err := r.dec.Token()
 	return list, err
 }
 
+// object reads an object, as array does.
 func (r *jsonReader) object(depth int) (lua.LValue, error) {
-	table := r.args.l.NewTable()
-	if depth == 1 {
-		if r.lines == nil {
-			r.lines, r.nulls = map[*lua.LTable]int{}, map[*lua.LTable][]string{}
-		}
-		r.lines[table] = r.line()
+	if !r.tally.add(tableCells) {
+		return nil, errTooManyValues
 	}
-	seen := map[string]bool{}
+	row := depth == 1 && r.listed
+	begin, first := r.line(), len(r.values)
+	var many map[string]bool // the fields, once they are more than a glance finds
+	fields := 0              // with a value
 	for r.dec.More() {
 		token, err := r.dec.Token()
 		if err != nil {
 			return nil, err
 		}
 		key, ok := token.(string)
-		switch {
-		case !ok:
+		if !ok {
 			return nil, fmt.Errorf("not JSON: a field needs a name in quotes, got %v", token)
-		case key == lineKey && depth == 1:
+		}
+		if key == lineKey && row {
 			return nil, fmt.Errorf("a field is named %q, which is the row's line", key)
-		case seen[key]:
+		}
+		if many == nil && len(r.names)-first >= glance {
+			many = map[string]bool{}
+			for _, n := range r.names[first:] {
+				many[n] = true
+			}
+		}
+		if many[key] || many == nil && slices.Contains(r.names[first:], key) {
 			return nil, fmt.Errorf("the field %s is given twice", quote(key))
 		}
-		seen[key] = true
+		if many != nil {
+			many[key] = true
+		}
 		v, err := r.value(depth + 1)
 		if err != nil {
 			return nil, err
 		}
-		if v == lua.LNil {
-			if depth == 1 {
-				r.nulls[table] = append(r.nulls[table], key)
-			}
-			continue
+		if v != lua.LNil {
+			fields++
 		}
-		table.RawSetString(key, v)
+		r.keep(key, v)
 	}
+	table := r.args.l.CreateTable(0, fields)
+	for i, v := range r.values[first:] {
+		if v != lua.LNil {
+			table.RawSetString(r.names[first+i], v)
+		}
+	}
+	if row {
+		r.objects = append(r.objects, jsonObject{table, begin})
+		for _, key := range r.names[first:] {
+			if !r.isKnown[key] {
+				r.isKnown[key] = true
+				r.known = append(r.known, key)
+			}
+		}
+	}
+	r.drop(first)
 	_, err := r.dec.Token()
 	return table, err
 }
 
+// glance is how many names are compared one by one.
+const glance = 16
+
+// keep puts a value with the others of the list or object that is open.
+func (r *jsonReader) keep(name string, v lua.LValue) {
+	r.values, r.names = append(r.values, v), append(r.names, name)
+}
+
+// drop forgets the values of a list or object that is closed.
+func (r *jsonReader) drop(first int) {
+	clear(r.values[first:])
+	clear(r.names[first:])
+	r.values, r.names = r.values[:first], r.names[:first]
+}
+
 // rows makes rows of the objects in an outermost list. Any field that one of them has may be asked of all.
-func (r *jsonReader) rows(v lua.LValue) {
-	list, ok := v.(*lua.LTable)
-	if !ok || r.lines == nil {
-		return
-	}
-	var objects []*lua.LTable
-	var keys []string
-	seen := map[string]bool{}
-	know := func(key string) {
-		if !seen[key] {
-			seen[key] = true
-			keys = append(keys, key)
-		}
-	}
-	for i := 1; i <= list.Len(); i++ {
-		o, ok := list.RawGetInt(i).(*lua.LTable)
-		if _, isObject := r.lines[o]; !ok || !isObject {
-			continue
-		}
-		objects = append(objects, o)
-		for k, _ := o.Next(lua.LNil); k != lua.LNil; k, _ = o.Next(k) {
-			know(k.String())
-		}
-		for _, k := range r.nulls[o] {
-			know(k)
-		}
-	}
-	meta := r.args.rowMeta(keys)
-	for _, o := range objects {
-		meta.own(o, r.lines[o])
+func (r *jsonReader) rows() {
+	meta := r.args.rowMeta(r.known)
+	for _, o := range r.objects {
+		meta.own(o.table, o.line)
 	}
 }

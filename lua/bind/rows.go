@@ -47,3 +47,28 @@ func (m *rowMeta) own(row *lua.LTable, line int) {
 	m.lines[row] = line
 	row.Metatable = m.table
 }
+
+// Limits of data. A table takes the room of many values.
+const (
+	maxCells   = 4_000_000
+	tableCells = 16
+	chargeEach = 4096 // cells between two questions to the host: about a megabyte of Lua values
+)
+
+// tally counts the cells of data that become Lua values, and lets the host look on while they do.
+type tally struct {
+	args          *args
+	cells, unpaid int
+}
+
+// add counts cells and reports whether the data may still be as long. It ends the script where the host has enough of it.
+func (t *tally) add(cells int) bool {
+	t.cells += cells
+	if t.unpaid += cells; t.unpaid >= chargeEach {
+		if charge := t.args.env.Charge; charge != nil && !charge(t.unpaid) {
+			t.args.failf("the scene may use no more")
+		}
+		t.unpaid = 0
+	}
+	return t.cells <= maxCells
+}

@@ -142,6 +142,27 @@ func TestHostileScripts(t *testing.T) {
 	}
 }
 
+// TestDataMeetsTheBound: the meter ends a binding that fills the heap while it reads data, not only the script after it.
+func TestDataMeetsTheBound(t *testing.T) {
+	for _, c := range []struct{ call, content string }{
+		{"data.json", "[" + strings.Repeat("{\"a\":1},", 200_000) + "{}]"},
+		{"data.csv", strings.Join(strings.Fields(numbered(20, "c%d ")), ",") + "\n" + strings.Repeat("1"+strings.Repeat(",1", 19)+"\n", 100_000)},
+	} {
+		path := scene(t, "scene.lua", "pcall("+c.call+", \"x\")", "x", c.content)
+		var before, after runtime.MemStats
+		runtime.ReadMemStats(&before)
+		_, _, err := Evaluate(t.Context(), path, Options{Limits: Limits{Memory: 16 << 20}})
+		runtime.ReadMemStats(&after)
+		if err == nil || !strings.HasSuffix(err.Error(), "scene.lua:1: the scene holds more than 16 MiB") {
+			t.Errorf("%s: got %v", c.call, err)
+		}
+		// Each would take 100 MB and more.
+		if mb := (after.TotalAlloc - before.TotalAlloc) >> 20; mb > 96 {
+			t.Errorf("%s: %d MB were allocated before the bound of 16", c.call, mb)
+		}
+	}
+}
+
 // TestPcallCannotHideABound runs each attack on a bound that is final inside pcall: the scene must end all the same.
 func TestPcallCannotHideABound(t *testing.T) {
 	for _, h := range hostile {

@@ -94,6 +94,13 @@ func (m *meter) charge(steps int64) bool {
 	return m.stopped == nil
 }
 
+// inside is charge for a binding that runs long and allocates: it looks at the bounds as the virtual machine would.
+func (m *meter) inside(steps int) bool {
+	m.used += int64(max(steps, 0))
+	m.look()
+	return m.stopped == nil
+}
+
 // reserve is asked before a string of n bytes is made. It reports whether it may be.
 func (m *meter) reserve(n int64) bool {
 	m.pledged += n
