@@ -36,12 +36,19 @@ func execute(args []string, stdout, stderr io.Writer) int {
 	defer cancel(nil)
 	signals := make(chan os.Signal, 2)
 	signal.Notify(signals, os.Interrupt, syscall.SIGTERM)
+	if !signal.Ignored(syscall.SIGHUP) { // as it is where the run is to outlive its terminal
+		signal.Notify(signals, syscall.SIGHUP)
+	}
 	defer signal.Stop(signals)
+	signal.Ignore(syscall.SIGPIPE) // a reader that has gone away is an error of writing, not the end of a run
 	go func() {
 		<-signals
 		cancel(errStopped)
-		<-signals
-		os.Exit(statusStopped)
+		for s := range signals {
+			if s != syscall.SIGHUP { // a terminal that closes may say so twice
+				os.Exit(statusStopped)
+			}
+		}
 	}()
 	root := newRoot()
 	root.SetArgs(args)

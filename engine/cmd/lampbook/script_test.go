@@ -6,6 +6,7 @@ import (
 	"os/exec"
 	"path/filepath"
 	"strconv"
+	"syscall"
 	"testing"
 	"time"
 
@@ -25,6 +26,7 @@ const scripts = "../../../testdata/script"
 //	status N lampbook …         runs lampbook and checks its exit status
 //	waitfor FILE                waits until the file exists
 //	interrupt N FILE lampbook … runs it, sends an interrupt once FILE exists, and checks the status
+//	hangup N FILE lampbook …    the same with the signal of a terminal that closes
 //
 // With -short, as under the race detector, only those run that say something about threads and signals.
 func TestScript(t *testing.T) {
@@ -46,7 +48,8 @@ func TestScript(t *testing.T) {
 		Cmds: map[string]func(ts *testscript.TestScript, neg bool, args []string){
 			"status":    scriptStatus,
 			"waitfor":   scriptWaitFor,
-			"interrupt": scriptInterrupt,
+			"interrupt": scriptSignal(os.Interrupt),
+			"hangup":    scriptSignal(syscall.SIGHUP),
 		},
 		Condition: func(name string) (bool, error) {
 			if name == "devfull" {
@@ -94,29 +97,31 @@ func appears(path string, hopeless <-chan struct{}) bool {
 	return false
 }
 
-// scriptInterrupt runs a command until a file exists, interrupts it and compares its exit status.
-func scriptInterrupt(ts *testscript.TestScript, neg bool, args []string) {
-	if neg || len(args) < 3 {
-		ts.Fatalf("usage: interrupt N FILE program [argument …]")
-	}
-	cmd := exec.Command(args[2], args[3:]...)
-	cmd.Dir = ts.MkAbs(".")
-	cmd.Stdout, cmd.Stderr = ts.Stdout(), ts.Stderr()
-	ts.Check(cmd.Start())
-	var result error
-	ended := make(chan struct{})
-	go func() {
-		result = cmd.Wait()
-		close(ended)
-	}()
-	if !appears(ts.MkAbs(args[1]), ended) {
-		_ = cmd.Process.Kill()
+// scriptSignal makes a command that runs a program until a file exists, sends it a signal and compares its exit status.
+func scriptSignal(sent os.Signal) func(ts *testscript.TestScript, neg bool, args []string) {
+	return func(ts *testscript.TestScript, neg bool, args []string) {
+		if neg || len(args) < 3 {
+			ts.Fatalf("usage: interrupt|hangup N FILE program [argument …]")
+		}
+		cmd := exec.Command(args[2], args[3:]...)
+		cmd.Dir = ts.MkAbs(".")
+		cmd.Stdout, cmd.Stderr = ts.Stdout(), ts.Stderr()
+		ts.Check(cmd.Start())
+		var result error
+		ended := make(chan struct{})
+		go func() {
+			result = cmd.Wait()
+			close(ended)
+		}()
+		if !appears(ts.MkAbs(args[1]), ended) {
+			_ = cmd.Process.Kill()
+			<-ended
+			ts.Fatalf("%s never came: %v", args[1], result)
+		}
+		ts.Check(cmd.Process.Signal(sent))
 		<-ended
-		ts.Fatalf("%s never came: %v", args[1], result)
+		compareStatus(ts, args[0], result)
 	}
-	ts.Check(cmd.Process.Signal(os.Interrupt))
-	<-ended
-	compareStatus(ts, args[0], result)
 }
 
 // compareStatus fails the script unless a command ended with the status wanted.
