@@ -41,11 +41,27 @@ func (a *args) readData() (file string, content []byte) {
 	if len(content) > maxTableBytes {
 		a.failf("%s: %d bytes, at most %d are accepted", path, len(content), maxTableBytes)
 	}
-	content = bytes.TrimPrefix(content, []byte("\ufeff"))
+	content = lineBreaks(bytes.TrimPrefix(content, []byte("\ufeff")))
 	if bad := badUTF8(content); bad > 0 {
 		a.failf("%s:%d: the file is not UTF-8 text: save it as \"CSV UTF-8\" or as UTF-8", path, bad)
 	}
 	return path, content
+}
+
+// lineBreaks gives text whose lines end in LF or CR LF: a CR that stands alone ends a line too, as some spreadsheets write it.
+// The content itself is left as it is.
+func lineBreaks(content []byte) []byte {
+	out, owned := content, false
+	for i, b := range content {
+		if b != '\r' || i+1 < len(content) && content[i+1] == '\n' {
+			continue
+		}
+		if !owned {
+			out, owned = bytes.Clone(content), true
+		}
+		out[i] = '\n'
+	}
+	return out
 }
 
 // badUTF8 is the first line that is not UTF-8; 0 if all are.

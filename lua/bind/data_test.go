@@ -18,6 +18,9 @@ var dataErrorTests = []struct{ file, content, options, want string }{
 	{"a.csv", "a,_line\n", "", `data.csv: a.csv:1: column 2 is named "_line", which is the row's line`},
 	{"a.csv", "a\nx\n\"open\n", "", `data.csv: a.csv:3: extraneous or missing " in quoted-field`},
 	{"a.csv", "a\nx\nh\xf6he\n", "", `data.csv: a.csv:3: the file is not UTF-8 text: save it as "CSV UTF-8" or as UTF-8`},
+	{"a.csv", "a\rx\rh\xf6he\r", "", `data.csv: a.csv:3: the file is not UTF-8 text: save it as "CSV UTF-8" or as UTF-8`},
+	{"a.csv", "a,b\r1,2\r3\r", "", `data.csv: a.csv:3: 1 cell, and the header on line 1 names 2 columns`},
+	{"a.json", "[1,\r2", "", `data.json: a.json:2: the file ends in the middle of the data`},
 	{"a.csv", "a\n12 cm\n", `, { numbers = "a" }`, `data.csv: a.csv:2: a: must be a number, got "12 cm"`},
 	{"a.csv", "a\n0x10\n", `, { numbers = "a" }`, `data.csv: a.csv:2: a: must be a number, got "0x10"`},
 	{"a.csv", "a\nNaN\n", `, { numbers = "a" }`, `data.csv: a.csv:2: a: must be a number, got "NaN"`},
@@ -60,9 +63,11 @@ func TestParseCSV(t *testing.T) {
 		{"a,b\n,\n1,2\n", "a|b 3:1|2", "rows without text are left out"},
 		{" a , b\n 1 ,2\n", "a|b 2:1|2", "cells are trimmed"},
 		{"name\nx\n", "name 2:x", "one column"},
+		{"a;b\r1;2\r\r\"3\r4\";5", "a|b 2:1|2 4:3\n4|5", "a line may end in CR alone, also in quotes"},
+		{"a\rx\r\ny\nz\r", "a 2:x 3:y 4:z", "three kinds of line break in one file"},
 		{"a,b\n\"say \"\"so\"\"\",2\n", `a|b 2:say "so"|2`, "RFC 4180: doubled quotes"},
 	} {
-		header, rows, err := parseCSV([]byte(c.content), 0, &tally{args: &args{env: newEnv()}})
+		header, rows, err := parseCSV(lineBreaks([]byte(c.content)), 0, &tally{args: &args{env: newEnv()}})
 		if err != nil {
 			t.Errorf("%q: %v", c.content, err)
 			continue
@@ -114,6 +119,14 @@ func TestDataIsCounted(t *testing.T) {
 		if most > chargeEach+maxColumns+tableCells || c.patience > 0 && used > c.patience+most {
 			t.Errorf("%.20q: %d steps between two questions, %d in all, %d were allowed", c.content, most, used, c.patience)
 		}
+	}
+}
+
+// TestLineBreaksLeaveTheFile: what Files gave may be used elsewhere, so it is not written over.
+func TestLineBreaksLeaveTheFile(t *testing.T) {
+	content := []byte("a\rb\r\nc")
+	if got := string(lineBreaks(content)); got != "a\nb\r\nc" || string(content) != "a\rb\r\nc" {
+		t.Errorf("got %q of what is now %q", got, content)
 	}
 }
 
