@@ -226,9 +226,12 @@ func (v *view) solve(e *Env, aspect float64) fitted {
 	if err != nil {
 		return fitted{err: err}
 	}
-	c, err := aim.Fit(aim.FitSpec{
-		Things: things, Sweep: f.sweep, Direction: f.direction, Up: v.Up, Margin: f.margin, Aspect: aspect,
-		Projection: v.Projection, FocalMM: v.FocalMM, SensorMM: v.SensorMM,
+	var c model.Camera
+	e.engine(func() {
+		c, err = aim.Fit(aim.FitSpec{
+			Things: things, Sweep: f.sweep, Direction: f.direction, Up: v.Up, Margin: f.margin, Aspect: aspect,
+			Projection: v.Projection, FocalMM: v.FocalMM, SensorMM: v.SensorMM,
+		})
 	})
 	c.FNumber = v.FNumber
 	return fitted{c, err}

@@ -45,6 +45,7 @@ type Env struct {
 	Overrides []Override              // in the order given; the last of one name counts
 	Forced    Forced                  // from the command line
 	Shipped   func(chunk string) bool // whether a chunk is a module of the program's own; nil: none is
+	Engine    func(work func())       // runs work of the engine that its meshes make long, apart from the scene's own; nil: it just runs
 	Charge    func(steps int) bool    // counts work inside a binding and reports whether the scene may go on; nil: it always may
 
 	plan      model.Plan
@@ -80,6 +81,15 @@ func (e *Env) Seed() uint64 {
 func (e *Env) stem() string {
 	base := path.Base(e.Scene)
 	return strings.TrimSuffix(base, path.Ext(base))
+}
+
+// engine runs work that is long where meshes are large.
+func (e *Env) engine(work func()) {
+	if e.Engine == nil {
+		work()
+		return
+	}
+	e.Engine(work)
 }
 
 // start readies the tables of a new plan.

@@ -141,7 +141,7 @@ func (a *args) stageOf(things []*thing) *stage {
 		a.failf("things: %v", err)
 	}
 	s := &stage{}
-	s.centre, s.radius = aim.Bounds(list)
+	e.engine(func() { s.centre, s.radius = aim.Bounds(list) })
 	s.rig = &rig{}
 	for _, l := range aim.DefaultLights(s.centre, s.radius) {
 		s.rig.lights = append(s.rig.lights, &light{Light: l, named: true, intensity: l.Intensity, power: -1})

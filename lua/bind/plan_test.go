@@ -423,3 +423,31 @@ func BenchmarkPlan(b *testing.B) {
 		})
 	}
 }
+
+// TestFramingIsTheEngines: what looks at every point of a mesh is handed to the host, which bills it apart from the scene.
+func TestFramingIsTheEngines(t *testing.T) {
+	for _, c := range []struct {
+		scene string
+		works int
+	}{
+		{`frame{ things = { ball } }`, 2}, // the default camera, the default lights
+		{`frame{ things = { ball }, name = "a" } frame{ things = { ball }, name = "b" }`, 2},
+		{`frame{ things = { ball }, camera = camera.fit{ things = { ball } }, lights = { light.ambient{} }, exposure = 0 }`, 1},
+		{`frame{ things = { ball }, camera = camera{ position = {0, 0, 1} }, lights = { light.ambient{} }, exposure = 0 }`, 0},
+	} {
+		e := newEnv()
+		works := 0
+		e.Engine = func(work func()) {
+			works++
+			work()
+		}
+		got, err := plan(t, e, ball+c.scene)
+		if err != nil {
+			t.Fatalf("%s: %s", c.scene, message(err))
+		}
+		want, err := plan(t, newEnv(), ball+c.scene)
+		if err != nil || works != c.works || got.Frames[0].Camera != want.Frames[0].Camera {
+			t.Errorf("%s: %d works of the engine, want %d; camera %v, without a host %v (%v)", c.scene, works, c.works, got.Frames[0].Camera, want.Frames[0].Camera, err)
+		}
+	}
+}

@@ -58,7 +58,7 @@ func Evaluate(ctx context.Context, scene string, o Options) (*model.Plan, *mesh.
 	reading := metered{meter, files}
 	library := mesh.NewLibrary(reading.Read)
 	env := &bind.Env{Scene: name, Files: reading, Meshes: meteredMeshes{meter, library}, Overrides: o.Set, Forced: o.Forced,
-		Shipped: shipped, Charge: meter.inside}
+		Shipped: shipped, Engine: meter.compute, Charge: meter.inside}
 	s := newSandbox(meter, limits, func(l *lua.LState) { bind.Open(l, env) })
 	s.find = finder(files, path.Base(name))
 	s.fatal = env.Fatal

@@ -279,6 +279,37 @@ func numbered(n int, format string) string {
 	return b.String()
 }
 
+// TestEngineTimeIsNotTheScenes: long work of the engine leaves the scene its time, and has a bound of its own.
+func TestEngineTimeIsNotTheScenes(t *testing.T) {
+	burn := func() {
+		for began := processorTime(); processorTime()-began < 150*time.Millisecond; {
+		}
+	}
+	for _, c := range []struct {
+		run   func(m *meter)
+		build time.Duration
+		want  string
+	}{
+		{func(m *meter) { m.compute(burn) }, time.Hour, ""},
+		{func(m *meter) { m.engine(burn) }, time.Hour, ""},
+		{func(m *meter) { m.compute(func() { m.engine(burn) }) }, time.Hour, ""},
+		{func(m *meter) { m.compute(burn) }, 100 * time.Millisecond, "reading files, building meshes and framing them takes more than 100ms of processor time"},
+		{func(*meter) { burn() }, time.Hour, "the scene does not come to an end: stopped after 100ms of processor time"},
+	} {
+		m := newMeter(t.Context(), Limits{Time: 100 * time.Millisecond, Build: c.build}.withDefaults())
+		c.run(m)
+		m.last = time.Time{} // a pulse has passed
+		m.look()
+		got := ""
+		if m.stopped != nil {
+			got = m.stopped.Msg
+		}
+		if got != c.want {
+			t.Errorf("got %q, want %q", got, c.want)
+		}
+	}
+}
+
 func TestCancellation(t *testing.T) {
 	ctx, cancel := context.WithCancel(context.Background())
 	s := newSandbox(newMeter(ctx, Limits{}.withDefaults()), Limits{}.withDefaults(), func(l *lua.LState) {

@@ -9,9 +9,9 @@ import (
 type Limits struct {
 	Steps  int64         // work units, one virtual-machine instruction or 32 bytes each; default 250 million (about two seconds)
 	Memory int64         // bytes that the heap may grow by, meshes not counted; default 512 MiB
-	Time   time.Duration // processor time, reading files and building meshes not counted; default 10 s, the net under Steps
+	Time   time.Duration // processor time, the engine's work on files and meshes not counted; default 10 s, the net under Steps
 	Meshes int64         // bytes that the heap may grow by while files are read and meshes built; default 4 GiB
-	Build  time.Duration // processor time for reading files and building meshes; default 15 min
+	Build  time.Duration // processor time for reading files, building meshes and framing them; default 15 min
 	Source int           // bytes of one Lua file; default 1 MiB
 	File   int64         // bytes of one file that the scene reads; default 512 MiB
 }

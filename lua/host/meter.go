@@ -176,7 +176,13 @@ func (m *meter) stop(msg string, cause error) {
 }
 
 // engine runs work of the engine that the scene asked for: reading a file, building a mesh. Its time and memory have bounds of their own.
-func (m *meter) engine(work func()) {
+func (m *meter) engine(work func()) { m.aside(work, true) }
+
+// compute runs work of the engine that leaves nothing behind, such as fitting a camera to meshes: its time has the bound of engine.
+func (m *meter) compute(work func()) { m.aside(work, false) }
+
+// aside runs work outside the scene's own time; with keeps, what the heap grows by is not the scene's either.
+func (m *meter) aside(work func(), keeps bool) {
 	if m.busy {
 		work()
 		return
@@ -188,7 +194,7 @@ func (m *meter) engine(work func()) {
 		m.busy = false
 		m.started = processorTime()
 		m.building += m.started - begin
-		if after := m.heap(); after > before {
+		if after := m.heap(); keeps && after > before {
 			m.built += after - before
 			m.base += after - before
 		}
@@ -197,7 +203,7 @@ func (m *meter) engine(work func()) {
 		case m.outer.Err() != nil:
 			m.stop(interrupted(m.outer.Err()), m.outer.Err())
 		case m.building > m.limits.Build:
-			m.stop(fmt.Sprintf("reading files and building meshes takes more than %v of processor time", m.limits.Build), nil)
+			m.stop(fmt.Sprintf("reading files, building meshes and framing them takes more than %v of processor time", m.limits.Build), nil)
 		case m.built > uint64(m.limits.Meshes):
 			m.settle()
 		}
