@@ -20,7 +20,7 @@ func WriteManifest(w io.Writer, r Run) error {
 	}
 	m := manifest{
 		Manifest: ManifestVersion, Engine: r.Engine, PictureVersion: model.PictureVersion, Scene: r.Scene, PlanHash: r.PlanHash, Stamp: r.Stamp,
-		Params: []paramForm{}, Warnings: []warningForm{}, Sheets: []sheetForm{}, Frames: []frameForm{},
+		Params: []paramForm{}, Warnings: []warningForm{}, Sheets: []sheetForm{}, Frames: []frameForm{}, EarlierFiles: r.EarlierFiles,
 		Totals: totalsForm{Frames: len(r.Frames), Done: r.count(Done), Kept: r.count(Kept), Failed: r.count(Failed), Waiting: r.count(Waiting)},
 		Times:  timesForm{Started: r.Times.Started, WallSeconds: r.Times.Wall, CPUSeconds: r.Times.CPU},
 	}
@@ -62,6 +62,7 @@ type manifest struct {
 	Totals         totalsForm    `json:"totals"`
 	Sheets         []sheetForm   `json:"sheets"`
 	Frames         []frameForm   `json:"frames"`
+	EarlierFiles   []string      `json:"earlier_files,omitempty"`
 	Times          timesForm     `json:"times"`
 }
 

@@ -18,6 +18,8 @@ type Run struct {
 	Frames   []FrameRecord
 	Sheets   []SheetRecord
 	Times    Times
+
+	EarlierFiles []string // files of earlier runs that are still there and that no frame or sheet lists; slash-separated, relative to the run's folder
 }
 
 // FrameRecord is what became of a frame.

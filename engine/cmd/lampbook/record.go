@@ -2,9 +2,7 @@ package main
 
 import (
 	"cmp"
-	"encoding/json"
 	"io"
-	"os"
 	"runtime/debug"
 	"slices"
 	"strings"
@@ -21,7 +19,7 @@ const (
 )
 
 // writeRecord writes the manifest and the table of frames.
-func writeRecord(j *job, w *pictures, sheets []report.SheetRecord, r *request, start time.Time) error {
+func writeRecord(j *job, w *pictures, sheets []report.SheetRecord, earlier *earlierRun, r *request, start time.Time) error {
 	p := j.plan
 	record := report.Run{
 		Engine: version(), Scene: p.Scene, PlanHash: w.hasher.Plan().String(), Stamp: r.stamp,
@@ -35,6 +33,7 @@ func writeRecord(j *job, w *pictures, sheets []report.SheetRecord, r *request, s
 			CameraRays: o.rays.CameraRays, ShadowRays: o.rays.ShadowRays, Samples: o.samples, Noise: o.noise, Seconds: o.seconds,
 		})
 	}
+	record.EarlierFiles = earlier.unlisted(&record)
 	err := encode.WriteFile(w.folder.path(manifestName), func(to io.Writer) error { return report.WriteManifest(to, record) })
 	if err != nil {
 		return err
@@ -68,35 +67,8 @@ func versionOf(info *debug.BuildInfo) string {
 	return text + " (" + revision + ")"
 }
 
-// maxManifest is the size of the largest manifest of an earlier run that is read: that of a plan with the most frames.
-const maxManifest = 1 << 30
-
-// earlierFiles lists the files that the folder's manifest says an earlier run left, slash-separated, those that are still there. A
-// manifest that is missing or cannot be read lists none.
-func earlierFiles(f *runFolder) []string {
-	file, err := os.Open(f.path(manifestName))
-	if err != nil {
-		return nil
-	}
-	defer file.Close()
-	type written struct{ Files []string }
-	var earlier struct{ Frames, Sheets []written }
-	if err := json.NewDecoder(io.LimitReader(file, maxManifest)).Decode(&earlier); err != nil {
-		return nil
-	}
-	var out []string
-	for _, w := range slices.Concat(earlier.Frames, earlier.Sheets) {
-		for _, name := range w.Files {
-			if info, err := os.Lstat(f.path(name)); err == nil && info.Mode().IsRegular() {
-				out = append(out, name)
-			}
-		}
-	}
-	return out
-}
-
 // tellLeftOver names the files of an earlier run that neither this one has written nor another choice of its frames would write.
-func tellLeftOver(v *view, folder *runFolder, earlier []string, j *job, w *pictures) {
+func tellLeftOver(v *view, folder *runFolder, earlier *earlierRun, j *job, w *pictures) {
 	var left []string
 	current := map[string]bool{}
 	for _, name := range j.files {
@@ -110,7 +82,7 @@ func tellLeftOver(v *view, folder *runFolder, earlier []string, j *job, w *pictu
 			current[file.name] = false
 		}
 	}
-	for _, name := range earlier {
+	for _, name := range earlier.files {
 		if !current[name] {
 			left = append(left, name)
 		}

@@ -46,21 +46,22 @@ func renderScene(ctx context.Context, r *request, v *view) error {
 	v.warn(j.plan)
 
 	start := time.Now()
-	earlier := earlierFiles(folder)
+	earlier := readEarlier(folder)
 	w := newPictures(folder, j.plan, r.assets)
 	done, err := renderFrames(ctx, j, r, v, w)
-	v.summary = totals(done, start)
+	v.summary = totals(done, 0, start)
 	stopped := errors.Is(err, errStopped)
+	w.keep(earlier)
 	if err != nil && !stopped {
 		// The pictures written so far are there: let the record say so, if the disk still takes it.
-		_ = writeRecord(j, w, nil, r, start)
+		_ = writeRecord(j, w, nil, earlier, r, start)
 		return failed(err)
 	}
 	for _, line := range faultyFrames(j.plan, func(i int) string { return w.taken[i].failure }) {
 		v.fault(line)
 	}
-	sheets, err := laySheets(w, r, v)
-	err = errors.Join(err, writeRecord(j, w, sheets, r, start))
+	sheets, sheetsKept, err := laySheets(w, r, v)
+	err = errors.Join(err, writeRecord(j, w, sheets, earlier, r, start))
 	for _, warning := range w.blankFrames(j.plan) {
 		v.warning(warning)
 	}
@@ -72,8 +73,8 @@ func renderScene(ctx context.Context, r *request, v *view) error {
 	case stopped:
 		status = statusStopped
 	}
-	v.summary = totals(done, start)
-	v.say("%s", endText(done, sheets, folder, time.Since(start)))
+	v.summary = totals(done, sheetsKept, start)
+	v.say("%s", endText(done, sheets, sheetsKept, folder, time.Since(start)))
 	if err != nil {
 		return failed(err)
 	}
@@ -116,8 +117,8 @@ type frameLine struct {
 }
 
 // totals is what the last JSON line of a run says of it.
-func totals(s run.Summary, start time.Time) summary {
-	return runSummary{Done: s.Done, Failed: s.Failed, Left: s.Left, Rays: s.Rays, Seconds: time.Since(start).Seconds()}
+func totals(s run.Summary, sheetsKept int, start time.Time) summary {
+	return runSummary{Done: s.Done, Failed: s.Failed, Left: s.Left, SheetsKept: sheetsKept, Rays: s.Rays, Seconds: time.Since(start).Seconds()}
 }
 
 func (s runSummary) ended(e ending) any {
@@ -127,15 +128,16 @@ func (s runSummary) ended(e ending) any {
 
 type runSummary struct {
 	ending
-	Done    int     `json:"done"`
-	Failed  int     `json:"failed"`
-	Left    int     `json:"left"`
-	Rays    int64   `json:"rays"`
-	Seconds float64 `json:"seconds"`
+	Done       int     `json:"done"`
+	Failed     int     `json:"failed"`
+	Left       int     `json:"left"`
+	SheetsKept int     `json:"sheets_kept,omitempty"` // pages left as an earlier run laid them
+	Rays       int64   `json:"rays"`
+	Seconds    float64 `json:"seconds"`
 }
 
-// endText is the line that a run ends with: frames, time, rays per second, where the sheets are.
-func endText(s run.Summary, sheets []report.SheetRecord, folder *runFolder, took time.Duration) string {
+// endText is the line that a run ends with: frames, time, rays per second, whether pages were kept, where the sheets are.
+func endText(s run.Summary, sheets []report.SheetRecord, sheetsKept int, folder *runFolder, took time.Duration) string {
 	text := count(s.Done, "frame") + " done"
 	if s.Failed > 0 {
 		text += fmt.Sprintf(", %d failed", s.Failed)
@@ -146,6 +148,9 @@ func endText(s run.Summary, sheets []report.SheetRecord, folder *runFolder, took
 	text += " in " + span(took)
 	if s.Rays > 0 {
 		text += ", " + rate(s.Rays, took)
+	}
+	if sheetsKept > 0 {
+		text += "; sheets of the earlier run left as they were"
 	}
 	var pages []string
 	for _, sheet := range sheets {

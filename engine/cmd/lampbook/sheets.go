@@ -40,17 +40,30 @@ func sheetPages(p *model.Plan) ([]string, error) {
 }
 
 // laySheets lays every sheet of the plan from the pictures on disk and returns what became of each. A sheet that cannot be laid
-// does not keep the others from it.
-func laySheets(w *pictures, r *request, v *view) ([]report.SheetRecord, error) {
+// does not keep the others from it. A page with frames that a stopped run has not rendered does not replace one that is there already:
+// kept is the number of those.
+func laySheets(w *pictures, r *request, v *view) (records []report.SheetRecord, kept int, faults error) {
 	p := w.plan
 	planHash := w.hasher.Plan()
-	var records []report.SheetRecord
-	var faults error
 	for _, s := range p.Sheets {
 		record := report.SheetRecord{Name: s.Name}
 		o := sheet.Options{Foot: sheet.Foot{PlanHash: planHash.Short(), Stamp: r.stamp, Lines: r.footLines(p)}}
-		err := sheet.Lay(p, s, w.tile, o, func(page sheet.Page) error {
+		whole := true // this run has rendered every frame of the page
+		source := func(frame int, pass string) (sheet.Tile, error) {
+			state := w.taken[frame].state
+			whole = whole && (state == report.Done || state == report.Failed)
+			return w.tile(frame, pass)
+		}
+		err := sheet.Lay(p, s, source, o, func(page sheet.Page) error {
 			name := path.Join(sheetsFolder, page.Name+".png")
+			if !whole && isFile(w.folder.path(name)) {
+				record.Files = append(record.Files, name)
+				record.Reason = "the run was stopped: pages of an earlier run left as they were"
+				kept++
+				whole = true
+				return nil
+			}
+			whole = true
 			about := encode.Options{Text: []encode.KeyValue{
 				{Key: "Software", Value: software},
 				{Key: "scene", Value: p.Scene},
@@ -74,7 +87,7 @@ func laySheets(w *pictures, r *request, v *view) ([]report.SheetRecord, error) {
 		}
 		records = append(records, record)
 	}
-	return records, faults
+	return records, kept, faults
 }
 
 // footLines says at a sheet's foot how the command line changed what the scene says: what was set, that it is a draft, what was left out.
@@ -130,6 +143,9 @@ type sheetLine struct {
 	File  string `json:"file"` // relative to the run's folder
 }
 
+// notRendered stands on a sheet where a stopped run has left a frame and none is there of an earlier one.
+const notRendered = "not rendered: the run was stopped"
+
 // tile fetches what a sheet shows of a frame: the picture, or one of its passes, as it was written.
 func (w *pictures) tile(frame int, pass string) (sheet.Tile, error) {
 	o := w.taken[frame]
@@ -137,11 +153,14 @@ func (w *pictures) tile(frame int, pass string) (sheet.Tile, error) {
 	case report.Failed:
 		return sheet.Tile{Failure: shortened(w.inside, o.failure)}, nil
 	case report.Waiting:
-		return sheet.Tile{Failure: "not rendered: the run was stopped"}, nil
+		return sheet.Tile{Failure: notRendered}, nil
 	}
 	for _, file := range w.files(frame) {
 		if file.pass == pass && isPNG(file.format) {
 			picture, err := readPNG(w.folder.path(file.name))
+			if err != nil && o.state == report.Kept {
+				return sheet.Tile{Failure: notRendered}, nil
+			}
 			return sheet.Tile{Image: picture}, err
 		}
 	}
