@@ -27,8 +27,8 @@ const (
 	maxFields     = 32_768 // cells of one line, the empty ones included that spreadsheets leave at its end
 )
 
-// readData reads a file of data.
-func (a *args) readData() (file string, content []byte) {
+// readData reads a file of data; advice is how to save it as UTF-8.
+func (a *args) readData(advice string) (file string, content []byte) {
 	var path string
 	a.text("path", &path)
 	file, err := a.env.Files.Find(path)
@@ -43,7 +43,7 @@ func (a *args) readData() (file string, content []byte) {
 	}
 	content = lineBreaks(bytes.TrimPrefix(content, []byte("\ufeff")))
 	if bad := badUTF8(content); bad > 0 {
-		a.failf("%s:%d: the file is not UTF-8 text: save it as \"CSV UTF-8\" or as UTF-8", path, bad)
+		a.failf("%s:%d: the file is not UTF-8 text: %s", path, bad, advice)
 	}
 	return path, content
 }
@@ -109,7 +109,7 @@ func dataCSV(a *args) lua.LValue {
 	if a.oneOf("decimal", marks, &mark) {
 		o.decimal = rune(marks[mark][0])
 	}
-	file, content := a.readData()
+	file, content := a.readData(`save it as "CSV UTF-8" or as UTF-8`)
 	count := tally{args: a}
 	header, records, err := parseCSV(content, o.separator, &count)
 	if err != nil {
@@ -234,6 +234,11 @@ func parseCSV(content []byte, separator rune, count *tally) (header record, rows
 		if err != nil {
 			return header, nil, err
 		}
+		for i, f := range fields {
+			if strings.IndexByte(f, 0) >= 0 {
+				return header, nil, fmt.Errorf("%d: %s: the cell holds a zero byte, which is no text: %s", line, header.cells[i], zeroAdvice)
+			}
+		}
 		if !count.add(tableCells+len(fields)) || len(rows) == model.MaxFrames {
 			return header, nil, fmt.Errorf("%d: the table goes on: at most %d rows and %d cells are accepted, where a row counts as %d more", line, model.MaxFrames, maxCells, tableCells)
 		}
@@ -244,6 +249,9 @@ func parseCSV(content []byte, separator rune, count *tally) (header record, rows
 	}
 	return header, rows, nil
 }
+
+// zeroAdvice helps with the file that most often has zero bytes.
+const zeroAdvice = "if the file is UTF-16, save it as UTF-8"
 
 // overlong is the first line with more than maxFields cells, which the reader would take in whole; 0 if none has. Line breaks and
 // separators in quotes do not count.
@@ -281,6 +289,8 @@ func headerOf(line int, names []string) (record, error) {
 		switch {
 		case n == "":
 			return record{}, fmt.Errorf("%d: column %d has no name", line, i+1)
+		case strings.IndexByte(n, 0) >= 0:
+			return record{}, fmt.Errorf("%d: the name of column %d holds a zero byte, which is no text: %s", line, i+1, zeroAdvice)
 		case n == lineKey:
 			return record{}, fmt.Errorf("%d: column %d is named %q, which is the row's line", line, i+1, n)
 		case seen[n]:

@@ -20,7 +20,7 @@ const maxJSONDepth = 64
 // dataJSON gives what a JSON file holds: lists and tables in the file's order. Where the file is a list of objects these are rows, which
 // know their line.
 func dataJSON(a *args) lua.LValue {
-	file, content := a.readData()
+	file, content := a.readData("save it as UTF-8")
 	r := &jsonReader{args: a, content: content, dec: json.NewDecoder(bytes.NewReader(content)), tally: tally{args: a}, isKnown: map[string]bool{}}
 	r.dec.UseNumber()
 	v, err := r.value(0)
