@@ -49,7 +49,7 @@ func newPictures(folder *runFolder, p *model.Plan, assets []string) *pictures {
 	return w
 }
 
-// take writes a frame's files, each whole or not at all. The error names the file.
+// take writes a frame's files, each whole or not at all. The error names the file, and the frame has failed with those written before it.
 func (w *pictures) take(f run.Finished) error {
 	o := outcome{seconds: f.Time.Seconds(), rays: f.Stats, samples: f.Samples, noise: f.Noise}
 	if f.Failure != "" {
@@ -69,6 +69,9 @@ func (w *pictures) take(f run.Finished) error {
 			return encodePicture(to, file, frame.Settings, f.Linear, f.Display, options)
 		})
 		if err != nil {
+			cause := strings.TrimPrefix(err.Error(), w.folder.path(file.name)+": ")
+			o.state, o.failure = report.Failed, file.name+": "+cause
+			w.taken[f.Frame] = o
 			return err
 		}
 		o.files = append(o.files, file.name)
@@ -76,6 +79,18 @@ func (w *pictures) take(f run.Finished) error {
 	o.state = report.Done
 	w.taken[f.Frame] = o
 	return nil
+}
+
+// recount counts the frames whose files could not be written as failed, not as left.
+func (w *pictures) recount(s *run.Summary) {
+	failed := 0
+	for _, o := range w.taken {
+		if o.state == report.Failed {
+			failed++
+		}
+	}
+	s.Left -= failed - s.Failed
+	s.Failed = failed
 }
 
 // files lists the files of a frame.

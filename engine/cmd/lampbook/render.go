@@ -49,13 +49,12 @@ func renderScene(ctx context.Context, r *request, v *view) error {
 	earlier := readEarlier(folder)
 	w := newPictures(folder, j.plan, r.assets)
 	done, err := renderFrames(ctx, j, r, v, w)
-	v.summary = totals(done, 0, start)
 	stopped := errors.Is(err, errStopped)
 	w.keep(earlier)
 	if err != nil && !stopped {
-		// The pictures written so far are there: let the record say so, if the disk still takes it.
-		_ = writeRecord(j, w, nil, earlier, r, start)
-		return failed(err)
+		w.recount(&done)
+		v.summary = totals(done, 0, start)
+		return failed(errors.Join(err, writeRecord(j, w, nil, earlier, r, start)))
 	}
 	for _, line := range faultyFrames(j.plan, func(i int) string { return w.taken[i].failure }) {
 		v.fault(line)
