@@ -15,8 +15,8 @@ import (
 // folder, are synced and then take the name, so that no reader and no crash meets half a file. After any error, or a panic in write, the
 // temporary file is gone and an earlier file of that name is as it was.
 //
-// The folder must exist. A link is followed. What is no ordinary file (a device, a pipe) is written to in place.
-// Errors name the path.
+// The folder must exist. A link is followed. A character device is written to in place; what is neither that nor an ordinary file (a
+// pipe, whose opening would wait for a reader; a socket) is left alone, with an error. Errors name the path.
 func WriteFile(path string, write func(io.Writer) error) error {
 	if err := writeFile(path, write); err != nil {
 		return fmt.Errorf("%s: %w", path, cause(err))
@@ -30,12 +30,16 @@ func writeFile(path string, write func(io.Writer) error) error {
 	switch {
 	case err == nil && info.IsDir():
 		return errors.New("is a folder")
-	case err == nil && !info.Mode().IsRegular():
+	case err == nil && info.Mode()&fs.ModeNamedPipe != 0:
+		return errors.New("is a pipe, not a file")
+	case err == nil && info.Mode()&fs.ModeCharDevice != 0:
 		f, err := os.OpenFile(path, os.O_WRONLY, 0)
 		if err != nil {
 			return err
 		}
 		return finish(f, write, false)
+	case err == nil && !info.Mode().IsRegular():
+		return errors.New("is no ordinary file")
 	case err == nil:
 		if path, err = filepath.EvalSymlinks(path); err != nil {
 			return err

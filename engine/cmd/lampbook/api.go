@@ -61,9 +61,11 @@ func copyOut(files fs.FS, dir string, policy copyPolicy) (written, kept []string
 		if err != nil {
 			return err
 		}
-		if old, err := os.ReadFile(path); err == nil && policy == keepChanged && !bytes.Equal(old, content) {
-			kept = append(kept, name)
-			return nil
+		if policy == keepChanged && isFile(path) {
+			if old, err := os.ReadFile(path); err == nil && !bytes.Equal(old, content) {
+				kept = append(kept, name)
+				return nil
+			}
 		}
 		written = append(written, name)
 		return encode.WriteFile(path, func(w io.Writer) error {
