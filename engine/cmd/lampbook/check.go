@@ -17,7 +17,7 @@ func newCheck() *cobra.Command {
 		Short: "Evaluates a scene and reads its files without casting a ray",
 		Long: `Evaluates a scene, checks everything that it asks for and reads every file that it names, without
 casting a ray or writing a file. Exit status 0: render would start with every frame; 1: some
-frames would fail; 2: the scene is wrong.`,
+frames would fail; 2: the scene is wrong; 3: stopped by a signal.`,
 		Example: "  lampbook check scenes/catalogue.lua",
 		RunE: func(cmd *cobra.Command, args []string) error {
 			return answer(cmd, &r, args[0], check)
@@ -35,7 +35,10 @@ func check(ctx context.Context, r *request, v *view) error {
 	}
 	p := j.plan
 	v.warn(p)
-	reasons := j.readMeshes()
+	reasons, err := j.readMeshes(ctx)
+	if err != nil {
+		return wrong(err)
+	}
 	faulty := 0
 	for i := range p.Frames {
 		if reasons[i] != "" {
@@ -76,8 +79,9 @@ func (s checkSummary) ended(e ending) any {
 	return s
 }
 
-// readMeshes builds every mesh that a frame shows and returns, for each frame, why it would fail, or "".
-func (j *job) readMeshes() []string {
+// readMeshes builds every mesh that a frame shows, holding one at a time, and returns, for each frame, why it would fail, or "". The
+// error is the cause of ctx's end.
+func (j *job) readMeshes(ctx context.Context) ([]string, error) {
 	faults := map[model.MeshID]error{}
 	reasons := make([]string, len(j.plan.Frames))
 	for i := range j.plan.Frames {
@@ -89,7 +93,13 @@ func (j *job) readMeshes() []string {
 		for _, t := range f.Things {
 			err, read := faults[t.Mesh]
 			if !read {
+				if ctx.Err() != nil {
+					return nil, context.Cause(ctx)
+				}
 				_, err = j.library.Get(j.plan.Meshes[t.Mesh])
+				if err == nil {
+					j.library.Forget(j.plan.Meshes[t.Mesh])
+				}
 				faults[t.Mesh] = err
 			}
 			if err != nil {
@@ -98,7 +108,7 @@ func (j *job) readMeshes() []string {
 			}
 		}
 	}
-	return reasons
+	return reasons, nil
 }
 
 // meshesText is count for the one word here that does not end in s.
