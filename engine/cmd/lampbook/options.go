@@ -33,14 +33,14 @@ type request struct {
 func addOptions(cmd *cobra.Command, r *request) {
 	f := cmd.Flags()
 	f.SortFlags = false
-	f.StringVarP(&r.out, "out", "o", "", "folder that the run goes to, a `DIR` made where it is missing; out/<scene> if not given, out/<scene>-draft with --draft")
+	f.VarP(folderPath{&r.out}, "out", "o", "folder that the run goes to, a `DIR` made where it is missing; out/<scene> if not given, out/<scene>-draft with --draft")
 	f.VarP(assignmentList{&r.set, "NAME=VALUE"}, "set", "s", "gives a parameter of the scene another value; may be repeated")
 	f.Var(assignmentList{&r.only, "TAG=VALUE"}, "only", "takes only the frames with that tag; another value of the same tag adds frames, another tag narrows")
 	f.BoolVarP(&r.draft, "draft", "d", false, "a quarter of the samples and half the size, where --samples and --size do not say otherwise, for a first look")
 	f.Var(pictureSize{&r.size}, "size", "size of every picture in pixels, 1 to 16384 a side; the scene's if not given")
 	f.Var(wholeNumber{&r.samples, 1, model.MaxSamples}, "samples", "camera rays a pixel, 1 to 65536; the scene's if not given")
 	f.Var(formatList{&r.formats}, "formats", "picture files to write, of png, png16, exr and exr_half, with commas between; the scene's if not given")
-	f.StringArrayVar(&r.assets, "assets", nil, "further folder, a `DIR` that the scene may read from besides its own; may be repeated")
+	f.Var(folderPaths{&r.assets}, "assets", "further folder, a `DIR` that the scene may read from besides its own; may be repeated")
 	f.Var(wholeNumber{&r.threads, 1, 1024}, "threads", "processor cores to use, 1 to 1024; every core if not given")
 	f.Var(byteSize{&r.memory}, "memory", "bound on the pictures that a run holds, such as 800MB or 4GiB; half the machine's memory if not given")
 	f.BoolVar(&r.alone, "alone", false, "casts each frame's rays for it alone; slower, the same pictures")
@@ -58,6 +58,9 @@ func addOptions(cmd *cobra.Command, r *request) {
 
 // accept completes a request with the scene and checks what options say together.
 func (r *request) accept(scene string) error {
+	if scene == "" {
+		return wrongf(`scene: the path of a scene file is accepted, such as scenes/first_sheet.lua, got ""`)
+	}
 	r.scene = scene
 	if r.memory == 0 {
 		r.memory = halfOfMemory()

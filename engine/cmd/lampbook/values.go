@@ -1,6 +1,7 @@
 package main
 
 import (
+	"errors"
 	"fmt"
 	"strconv"
 	"strings"
@@ -45,6 +46,39 @@ func (v pictureSize) Set(text string) error {
 func (v pictureSize) Type() string { return "WxH" }
 
 func (v pictureSize) String() string { return "" }
+
+// folderPath is an option's value: where a folder is or is to be.
+type folderPath struct{ to *string }
+
+func (v folderPath) Set(text string) error {
+	if text == "" {
+		return errNoFolder
+	}
+	*v.to = text
+	return nil
+}
+
+func (v folderPath) Type() string { return "DIR" }
+
+func (v folderPath) String() string { return "" }
+
+// folderPaths is the value of an option that may be repeated: folders.
+type folderPaths struct{ to *[]string }
+
+func (v folderPaths) Set(text string) error {
+	if text == "" {
+		return errNoFolder
+	}
+	*v.to = append(*v.to, text)
+	return nil
+}
+
+func (v folderPaths) Type() string { return "DIR" }
+
+func (v folderPaths) String() string { return "" }
+
+// errNoFolder is the mistake of an empty path.
+var errNoFolder = errors.New(`the path of a folder is accepted, such as ., got ""`)
 
 // byteSize is an option's value: a number of bytes, in units of a thousand or of 1024.
 type byteSize struct{ to *int64 }
