@@ -38,6 +38,9 @@ func TestValidate(t *testing.T) {
 	}{
 		{"name", func(p *Plan) { p.Frames[0].Name = "../x" }, `scenes/cup.lua:7: frame name "../x"`},
 		{"dot name", func(p *Plan) { p.Frames[0].Name = ".x" }, "frame name"},
+		{"name with a dot at its end", func(p *Plan) { p.Frames[0].Name = "x." }, "not '.' first or last"},
+		{"name of a device", func(p *Plan) { p.Frames[0].Name = "Con.2" }, `scenes/cup.lua:7: frame name "Con.2": Windows keeps it for a device, with any ending`},
+		{"sheet named as a device", func(p *Plan) { p.Sheets = []Sheet{{Name: "lpt1"}} }, `sheet name "lpt1": Windows keeps it`},
 		{"long name", func(p *Plan) { p.Frames[0].Name = strings.Repeat("n", 121) }, "at most 120"},
 		{"twice", func(p *Plan) { p.Frames = append(p.Frames, p.Frames[0]) }, "was given before at scenes/cup.lua:7"},
 		{"no things", func(p *Plan) { p.Frames[0].Things = nil }, "no things"},
@@ -181,5 +184,25 @@ func TestPlanHash(t *testing.T) {
 	}
 	if s := before.Short(); len(s) != 10 || !strings.HasPrefix(before.String(), s) {
 		t.Errorf("short hash is %q", s)
+	}
+}
+
+func TestValidName(t *testing.T) {
+	const source = "Microsoft, Naming Files, Paths, and Namespaces; from memory"
+	for _, c := range []struct {
+		names  string
+		valid  bool
+		source string
+	}{
+		{"a 7 _ - a.b a-b_c.d -a __ a..b", true, "file systems, web addresses and shells"},
+		{". .a a. a.b. .. a/b ü a:b", false, "file systems, web addresses and shells"},
+		{"con PRN Aux nul com1 COM9 lpt1 Lpt9 con.x nul.tar.gz com1.a-b", false, source},
+		{"cone com com0 com10 lpt lpt0 con-1 x.con auxiliary _nul nul_", true, source},
+	} {
+		for _, n := range strings.Fields(c.names) {
+			if ValidName(n) != c.valid {
+				t.Errorf("ValidName(%q) = %t (%s)", n, !c.valid, c.source)
+			}
+		}
 	}
 }

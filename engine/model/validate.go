@@ -21,12 +21,33 @@ const (
 	MaxNameLength   = 120
 )
 
-// namePattern is what file systems, web addresses and shells all take without quoting.
-var namePattern = regexp.MustCompile(`^[A-Za-z0-9_-][A-Za-z0-9._-]*$`)
+// namePattern is what file systems, web addresses and shells all take without quoting; reservedPattern is what Windows keeps for devices,
+// and with what ending does not matter (Microsoft, "Naming Files, Paths, and Namespaces"; from memory).
+var (
+	namePattern     = regexp.MustCompile(`^[A-Za-z0-9_-]([A-Za-z0-9._-]*[A-Za-z0-9_-])?$`)
+	reservedPattern = regexp.MustCompile(`^(?i:con|prn|aux|nul|com[1-9]|lpt[1-9])(\.|$)`)
+)
 
-// ValidName reports whether s may name a frame or a sheet: letters, digits, '.', '_', '-', not beginning with '.', at most
-// MaxNameLength long.
-func ValidName(s string) bool { return len(s) <= MaxNameLength && namePattern.MatchString(s) }
+// ValidName reports whether s may name a frame or a sheet: letters, digits, '.', '_', '-', neither beginning nor ending with '.', at
+// most MaxNameLength long, and not a ReservedName.
+func ValidName(s string) bool {
+	return len(s) <= MaxNameLength && namePattern.MatchString(s) && !ReservedName(s)
+}
+
+// ReservedName reports whether a file of this name would be a device on Windows, whatever its ending: con, prn, aux, nul, com1 to com9,
+// lpt1 to lpt9, in either case.
+func ReservedName(s string) bool { return reservedPattern.MatchString(s) }
+
+// checkName says what is wrong with the name of a frame or a sheet.
+func checkName(of, s string) error {
+	switch {
+	case ReservedName(s):
+		return fmt.Errorf("%s name %q: Windows keeps it for a device, with any ending", of, s)
+	case !ValidName(s):
+		return fmt.Errorf("%s name %q: letters, digits, '.', '_' and '-' are accepted, at most %d of them and not '.' first or last", of, s, MaxNameLength)
+	}
+	return nil
+}
 
 // Validate checks that the plan can be rendered: indices in range, numbers finite and in their ranges, names well formed
 // and unique. The error names the frame's line in the scene. Frames with a Failure are checked for their name only.
@@ -52,8 +73,8 @@ func (p *Plan) Validate() error {
 	seen := make(map[string]int, len(p.Frames))
 	for i := range p.Frames {
 		f := &p.Frames[i]
-		if !ValidName(f.Name) {
-			return fmt.Errorf("%sframe name %q: letters, digits, '.', '_' and '-' are accepted, at most %d of them", f.Pos.prefix(), f.Name, MaxNameLength)
+		if err := checkName("frame", f.Name); err != nil {
+			return fmt.Errorf("%s%w", f.Pos.prefix(), err)
 		}
 		if j, ok := seen[f.Name]; ok {
 			return fmt.Errorf("%sframe name %q was given before%s", f.Pos.prefix(), f.Name, p.Frames[j].Pos.suffix())
@@ -68,8 +89,8 @@ func (p *Plan) Validate() error {
 	}
 	sheets := map[string]bool{}
 	for _, s := range p.Sheets {
-		if !ValidName(s.Name) {
-			return fmt.Errorf("%ssheet name %q: letters, digits, '.', '_' and '-' are accepted, at most %d of them", s.Pos.prefix(), s.Name, MaxNameLength)
+		if err := checkName("sheet", s.Name); err != nil {
+			return fmt.Errorf("%s%w", s.Pos.prefix(), err)
 		}
 		if sheets[s.Name] {
 			return fmt.Errorf("%ssheet name %q was given before", s.Pos.prefix(), s.Name)

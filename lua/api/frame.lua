@@ -2,7 +2,7 @@
 
 ---@class frame.keys
 ---@field things thing|thing[] what stands in the picture, one or several; lists in the list count as their elements
----@field name? string of its file: letters, digits, '.', '_', '-', unique in the scene; default made of the tags, else "frame-1"
+---@field name? string of its file: letters, digits, '.', '_', '-', no '.' first or last, unique in the scene; default made of the tags, else "frame-1"
 ---@field tags? table<string, number|string|boolean> what tells it from its siblings, by which sheets are laid; the ending of a name is its unit on them: _deg, _mm, _cm, _m, _cd, _lm, _lx, _nit, _percent, _stops, _kelvin; default none
 ---@field camera? camera default camera.fit over a whole turn of the things
 ---@field lights? rig|light|(light|rig)[] default a large soft key from the upper left front and a third as much ambient light, sized to the things

@@ -1,7 +1,7 @@
 ---@meta
 
 ---@class sheet.keys
----@field name? string of its file: letters, digits, '.', '_', '-', unique among the sheets; default made of the title, else the scene's
+---@field name? string of its file: letters, digits, '.', '_', '-', no '.' first or last, unique among the sheets; default made of the title, else the scene's
 ---@field title? string at its head; default its name, else the scene's
 ---@field rows? string|string[] tags whose values make the rows, outermost first; "pass" stands for the passes. A sheet without rows, columns and pages is laid by the tags in which its frames differ: the first makes the columns, the others the rows; default none
 ---@field columns? string|string[] likewise for the columns; default none

@@ -286,6 +286,9 @@ func TestFrameNames(t *testing.T) {
 		{`{ g = "青磁" }`, "g-u9752u78c1"},
 		{`{ a = "..", b = "../x" }`, "a-.._b-..-x"},
 		{`{ [".a"] = "" }`, "-.a-"},
+		{`{ a = "no." }`, "a-no.-"},
+		{`{ ["con.a"] = 1 }`, "-con.a-1"},
+		{`{ con = 1 }`, "con-1"},
 	} {
 		p := mustPlan(t, ball+`frame{ things = { ball }, tags = `+c.tags+` }`)
 		if got := p.Frames[0].Name; got != c.want || !model.ValidName(got) {
@@ -449,5 +452,18 @@ func TestFramingIsTheEngines(t *testing.T) {
 		if err != nil || works != c.works || got.Frames[0].Camera != want.Frames[0].Camera {
 			t.Errorf("%s: %d works of the engine, want %d; camera %v, without a host %v (%v)", c.scene, works, c.works, got.Frames[0].Camera, want.Frames[0].Camera, err)
 		}
+	}
+}
+
+// TestSheetOfADevice: what Windows keeps for devices is made no sheet's name, neither of a title nor of the scene's own name.
+func TestSheetOfADevice(t *testing.T) {
+	e := newEnv()
+	e.Scene = "aux.lua"
+	p, err := plan(t, e, ball+`frame{ things = { ball } } sheet{} sheet{ title = "LPT1.shelf" }`)
+	if err != nil {
+		t.Fatal(message(err))
+	}
+	if a, b := p.Sheets[0].Name, p.Sheets[1].Name; a != "sheet-aux" || b != "sheet-lpt1.shelf" {
+		t.Errorf("sheets are named %q and %q", a, b)
 	}
 }

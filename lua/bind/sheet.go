@@ -111,10 +111,8 @@ func (a *args) tagTable(name string) []model.TagOrder {
 func (a *args) sheetName(s *model.Sheet) string {
 	var name string
 	if a.text("name", &name) {
-		switch {
-		case !model.ValidName(name):
-			a.failf("name must be letters, digits, '.', '_' and '-', at most %d of them and not '.' first, got %s", model.MaxNameLength, quote(name))
-		case a.env.sheets[strings.ToLower(name)]:
+		a.checkName(name)
+		if a.env.sheets[strings.ToLower(name)] {
 			a.failf("the name %q was given to a sheet before", name)
 		}
 		return name
@@ -136,8 +134,11 @@ func (e *Env) freeSheetName(title string) string {
 	if len(stem) > 80 {
 		stem = strings.TrimRight(stem[:80], "-.")
 	}
-	if stem == "" {
+	switch {
+	case stem == "":
 		stem = "sheet"
+	case model.ReservedName(stem):
+		stem = "sheet-" + stem
 	}
 	name := stem
 	for n := 2; e.sheets[name]; n++ {

@@ -85,9 +85,8 @@ func (a *args) frameName(tags []model.Tag) string {
 	var name string
 	given := a.text("name", &name)
 	switch {
-	case given && !model.ValidName(name):
-		a.failf("name must be letters, digits, '.', '_' and '-', at most %d of them and not '.' first, got %s", model.MaxNameLength, quote(name))
 	case given:
+		a.checkName(name)
 	case len(tags) > 0:
 		name = nameOfTags(tags)
 	default:
@@ -108,6 +107,16 @@ func (a *args) frameName(tags []model.Tag) string {
 	return ""
 }
 
+// checkName refuses what may not name a frame or a sheet.
+func (a *args) checkName(name string) {
+	switch {
+	case model.ReservedName(name):
+		a.failf("the name %q is one that Windows keeps for a device, with any ending: give another", name)
+	case !model.ValidName(name):
+		a.failf("name must be letters, digits, '.', '_' and '-', at most %d of them and not '.' first or last, got %s", model.MaxNameLength, quote(name))
+	}
+}
+
 // nameOfTags writes tags in the letters that a file name may have.
 func nameOfTags(tags []model.Tag) string {
 	var parts []string
@@ -119,7 +128,10 @@ func nameOfTags(tags []model.Tag) string {
 		parts = append(parts, fileLetters(t.Key)+"-"+fileLetters(value))
 	}
 	name := strings.Join(parts, "_")
-	if name[0] == '.' {
+	if name[len(name)-1] == '.' {
+		name += "-" // Windows drops a '.' at the end
+	}
+	if name[0] == '.' || model.ReservedName(name) {
 		name = "-" + name // a file that begins with '.' is hidden
 	}
 	if len(name) > model.MaxNameLength {

@@ -219,14 +219,14 @@ func TestPerLine(t *testing.T) {
 
 func TestPageNames(t *testing.T) {
 	p := &model.Plan{}
-	for i, v := range []string{"celadon", "ox blood", "\u9752", "\u78c1", "..", "celadon!", strings.Repeat("x", 200)} {
+	for i, v := range []string{"celadon", "ox blood", "\u9752", "\u78c1", "..", "celadon!", strings.Repeat("x", 200), strings.Repeat(".", 200) + "x"} {
 		p.Frames = append(p.Frames, frame(fmt.Sprint("f", i), "glaze", v, "gloss", 4))
 	}
 	names, err := Names(p, model.Sheet{Name: "by-glaze", Pages: []string{"glaze"}, Columns: []string{"gloss"}}, Options{})
 	if err != nil {
 		t.Fatal(err)
 	}
-	want := []string{"by-glaze-celadon", "by-glaze-ox-blood", "by-glaze", "by-glaze-2", "by-glaze-..", "by-glaze-celadon-2"}
+	want := []string{"by-glaze-celadon", "by-glaze-ox-blood", "by-glaze", "by-glaze-2", "by-glaze-3", "by-glaze-celadon-2"}
 	if !slices.Equal(names[:6], want) {
 		t.Errorf("got %q, want %q", names[:6], want)
 	}

@@ -177,7 +177,7 @@ func (c *composer) slug(t *table) string {
 		var b strings.Builder
 		for _, r := range strings.ReplaceAll(c.words[c.pivot.pageKeys[i]].text(v), trueMinus, "-") {
 			switch {
-			case r < 128 && model.ValidName("x"+string(r)):
+			case r < 128 && model.ValidName("x"+string(r)+"x"):
 				b.WriteRune(r)
 			case r == ' ':
 				b.WriteByte('-')
@@ -187,7 +187,7 @@ func (c *composer) slug(t *table) string {
 			parts = append(parts, b.String())
 		}
 	}
-	return strings.Join(parts, "-")
+	return strings.TrimRight(strings.Join(parts, "-"), ".")
 }
 
 // uniqueName is the name of page n of a table: the sheet's name, the slug, and a number where that is not enough or there are several.
@@ -197,7 +197,7 @@ func uniqueName(name, slug string, n int, used map[string]bool) string {
 	}
 	const room = 8 // for a number
 	if len(name) > model.MaxNameLength-room {
-		name = name[:model.MaxNameLength-room]
+		name = strings.TrimRight(name[:model.MaxNameLength-room], ".")
 	}
 	full := name
 	if n > 0 {
