@@ -11,13 +11,18 @@ import (
 type limit struct {
 	low, high   float64 // with set: admitted from low to high
 	set         bool
-	above       bool // low itself is not admitted
+	above       bool // low itself is not admitted, nor what is less than least over it
+	solid       bool // low is admitted, and nothing else that is less than least over it
 	unit        string
 	unboundedUp bool // messages leave out high, which only keeps slips of the finger out
 }
 
 // maxLength is the longest length accepted: a million metres is beyond any stage, and float32 still resolves a tenth of a metre there.
 const maxLength = 1e6
+
+// least is how far above a bound that is itself excluded a number must be: a billionth, which of a
+// metre no product's detail reaches. What is smaller is a slip, and would be lost in the engine's squares and quotients.
+const least = 1e-9
 
 func lengthAbove0() limit {
 	return limit{low: 0, high: maxLength, set: true, above: true, unit: "metres", unboundedUp: true}
@@ -27,6 +32,9 @@ func between(low, high float64, unit string) limit {
 }
 func above0(high float64, unit string) limit {
 	return limit{low: 0, high: high, set: true, above: true, unit: unit, unboundedUp: true}
+}
+func length0OrMore() limit {
+	return limit{low: 0, high: maxLength, set: true, solid: true, unit: "metres", unboundedUp: true}
 }
 func atLeast0(high float64, unit string) limit {
 	return limit{low: 0, high: high, set: true, unit: unit, unboundedUp: true}
@@ -39,6 +47,10 @@ func (r limit) rule(v float64) string {
 		unit = " " + unit
 	}
 	switch {
+	case r.tooSmall(v) && r.solid:
+		return number(r.low) + " or at least " + number(r.low+least) + unit
+	case r.tooSmall(v):
+		return "at least " + number(r.low+least) + unit
 	case !r.set:
 		return "a finite number" + strings.TrimSuffix(" of"+unit, " of")
 	case r.unboundedUp && v > r.high:
@@ -57,7 +69,12 @@ func (r limit) admits(v float64) bool {
 	if math.IsNaN(v) || math.IsInf(v, 0) {
 		return false
 	}
-	return !r.set || (v >= r.low && v <= r.high && !(r.above && v == r.low))
+	return !r.set || (v >= r.low && v <= r.high && !(r.above && v == r.low) && !r.tooSmall(v))
+}
+
+// tooSmall reports whether v is above the low bound, but by less than least.
+func (r limit) tooSmall(v float64) bool {
+	return (r.above || r.solid) && v > r.low && v < r.low+least
 }
 
 // number reads a number within the limit.

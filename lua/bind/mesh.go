@@ -87,8 +87,8 @@ func (a *args) readForm(f *form) lua.LValue {
 	case model.MeshCylinder:
 		a.sizes(f, "radius", "height", "")
 	case model.MeshCone:
-		a.number("radius", &f.Size[0], atLeast0(maxLength, "metres"))
-		a.number("top", &f.Size[1], atLeast0(maxLength, "metres"))
+		a.number("radius", &f.Size[0], length0OrMore())
+		a.number("top", &f.Size[1], length0OrMore())
 		a.number("height", &f.Size[2], lengthAbove0())
 		if f.Size[0] == 0 && f.Size[1] == 0 {
 			a.failf("radius and top are both 0: one of them must be > 0 metres")

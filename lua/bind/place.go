@@ -1,6 +1,8 @@
 package bind
 
 import (
+	"math"
+
 	lua "github.com/yuin/gopher-lua"
 
 	"lampbook/engine/aim"
@@ -46,6 +48,11 @@ func (a *args) readThing(t *thing) lua.LValue {
 	}
 	if t.Scale[0] == 0 || t.Scale[1] == 0 || t.Scale[2] == 0 {
 		a.failf("scale must not be 0 along any axis, got %s", describePoint(t.Scale))
+	}
+	for _, s := range t.Scale {
+		if math.Abs(s) < least {
+			a.failf("scale must be at least %s along every axis, or at most -%[1]s to mirror, got %s", number(least), describePoint(t.Scale))
+		}
 	}
 	a.text("name", &t.Name)
 	seen, shadows := !t.Hidden, !t.NoShadow

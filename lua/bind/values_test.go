@@ -332,3 +332,49 @@ func TestRandom(t *testing.T) {
 		t.Error(message(err))
 	}
 }
+
+// TestLeast: what is above 0 and less than a billionth is refused by the name of its key; a billionth itself makes a sound plan.
+func TestLeast(t *testing.T) {
+	for _, c := range []struct{ scene, call, key, rule string }{
+		{`mesh.sphere{ radius = V }`, "mesh.sphere", "radius", "at least 1e-09 metres"},
+		{`mesh.plane{ width = V, depth = 1 }`, "mesh.plane", "width", "at least 1e-09 metres"},
+		{`mesh.box{ width = 1, height = V }`, "mesh.box", "height", "at least 1e-09 metres"},
+		{`mesh.cylinder{ radius = 1, height = V }`, "mesh.cylinder", "height", "at least 1e-09 metres"},
+		{`mesh.torus{ radius = 1, tube = V }`, "mesh.torus", "tube", "at least 1e-09 metres"},
+		{`mesh.cone{ radius = V, top = 1, height = 1 }`, "mesh.cone", "radius", "0 or at least 1e-09 metres"},
+		{`mesh.cone{ radius = 1, top = V, height = 1 }`, "mesh.cone", "top", "0 or at least 1e-09 metres"},
+		{`mesh.extrude{ outline = {{0, 0}, {1, 0}, {0, 1}}, depth = V }`, "mesh.extrude", "depth", "at least 1e-09 metres"},
+		{`mesh.load("shapes/bare.obj", { unit = V })`, "mesh.load", "unit", "at least 1e-09 metres to one unit of the file"},
+		{`place{ mesh = mesh.sphere{ radius = 1 }, scale = V }`, "place", "scale", "at least 1e-09"},
+		{`place{ mesh = mesh.sphere{ radius = 1 }, scale = {1, V, 1} }`, "place", "scale", "at least 1e-09 along every axis, or at most -1e-09 to mirror"},
+		{`place{ mesh = mesh.sphere{ radius = 1 }, scale = {1, 1, -V} }`, "place", "scale", "at least 1e-09 along every axis, or at most -1e-09 to mirror"},
+		{`light.area{ position = {0, 1, 0}, up = {0, 0, 1}, width = V }`, "light.area", "width", "at least 1e-09 metres"},
+		{`light.area{ position = {0, 1, 0}, shape = "sphere", radius = V }`, "light.area", "radius", "at least 1e-09 metres"},
+		{`light.point{ position = {0, 1, 0}, range = V }`, "light.point", "range", "at least 1e-09 metres"},
+		{`light.spot{ position = {0, 1, 0}, outer = V }`, "light.spot", "outer", "at least 1e-09 degrees from the axis"},
+		{`camera{ position = {0, 0, 1}, focal = V }`, "camera", "focal", "at least 1e-09 millimetres"},
+		{`camera{ position = {0, 0, 1}, sensor = V }`, "camera", "sensor", "at least 1e-09 millimetres"},
+		{`camera{ position = {0, 0, 1}, fov = V }`, "camera", "fov", "at least 1e-09 degrees"},
+		{`camera{ position = {0, 0, 1}, focus = V }`, "camera", "focus", "at least 1e-09 metres"},
+		{`camera{ position = {0, 0, 1}, projection = "orthographic", height = V }`, "camera", "height", "at least 1e-09 metres"},
+		{`material.blinn_phong{ opacity = V }`, "material.blinn_phong", "opacity", "at least 1e-09"},
+	} {
+		for _, v := range []string{"5e-324", "1e-300", "9.99e-10"} {
+			err := run(t, newState(t, newEnv()), "return "+strings.ReplaceAll(c.scene, "V", v))
+			if got, want := message(err), "scenes/test.lua:1: "+c.call+": "+c.key+" must be "+c.rule+", got "; !strings.HasPrefix(got, want) {
+				t.Errorf("%s at %s\n got %s\nwant %s…", c.scene, v, got, want)
+			}
+		}
+		use := map[string]string{
+			"mesh": "things = { place{ mesh = x } }", "place": "things = { x }", "light": "things = { ball }, lights = { x }",
+			"camera": "things = { ball }, camera = x", "material": "things = { ball:with{ material = x } }",
+		}
+		maker, _, _ := strings.Cut(c.call, ".")
+		scene := ball + "local x = " + strings.ReplaceAll(c.scene, "V", "1e-9") + " frame{ " + use[maker] + " }"
+		if p, err := plan(t, newEnv(), scene); err != nil {
+			t.Errorf("%s: %s", scene, message(err))
+		} else if err := p.Validate(); err != nil {
+			t.Errorf("%s: %v", scene, err)
+		}
+	}
+}
