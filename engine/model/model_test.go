@@ -71,6 +71,9 @@ func TestValidate(t *testing.T) {
 		{"per line", func(p *Plan) { p.Sheets = []Sheet{{Name: "a", PerLine: -1}} }, "per_line must be"},
 		{"tile", func(p *Plan) { p.Sheets = []Sheet{{Name: "a", Tile: [2]int{8, 100}}} }, "16 to 4096 pixels a side, got 8 and 100"},
 		{"paper", func(p *Plan) { p.Sheets = []Sheet{{Name: "a", Paper: 9}} }, "paper 9"},
+		{"reference", func(p *Plan) { p.Sheets = []Sheet{{Name: "a", Reference: []TagChoice{{Key: "gloss"}}}} }, `"gloss" one value, got 0`},
+		{"show", func(p *Plan) { p.Sheets = []Sheet{{Name: "a", Show: 2}} }, "show 2"},
+		{"difference from nothing", func(p *Plan) { p.Sheets = []Sheet{{Name: "a", Show: ShowDifference}} }, "from no reference"},
 		{"sheets", func(p *Plan) { p.Sheets = []Sheet{{Name: "a"}, {Name: "a"}} }, "given before"},
 	}
 	for _, tt := range tests {

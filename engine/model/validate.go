@@ -112,6 +112,15 @@ func (s *Sheet) validate() error {
 		return fmt.Errorf("tile must be %d to %d pixels a side, got %d and %d", MinTile, MaxTile, w, h)
 	case s.Paper > PaperDark:
 		return fmt.Errorf("paper %d is not known", s.Paper)
+	case s.Show > ShowDifference:
+		return fmt.Errorf("show %d is not known", s.Show)
+	case s.Show == ShowDifference && len(s.Reference) == 0:
+		return fmt.Errorf("show is the difference, from no reference")
+	}
+	for _, r := range s.Reference {
+		if len(r.Values) != 1 {
+			return fmt.Errorf("reference must give the tag %q one value, got %d", r.Key, len(r.Values))
+		}
 	}
 	return nil
 }

@@ -120,6 +120,10 @@ var errorTests = []struct{ scene, want string }{
 	{ball + `frame{ things = { ball:with{ name = "a" }, ball:with{ name = "a" } } }`, `frame: two things are named "a": give each a name of its own`},
 	{ball + `frame{ things = { ball }, lights = 3 }`, `frame: lights must be a rig or a list of lights, got 3`},
 	{`sheet{ rows = "a", columns = "a" }`, `sheet: rows and columns both name the tag "a"`},
+	{`sheet{ reference = { gloss = {4, 16} } }`, `sheet: reference must give the tag "gloss" one value, got 2`},
+	{`sheet{ reference = 16 }`, `sheet: reference must be a table { tag = value }, got 16`},
+	{`sheet{ show = "difference" }`, `sheet: show = "difference" needs a reference: give the tag and the value of the tiles to compare with, reference = { tag = value }`},
+	{`sheet{ show = "diference" }`, `sheet: show must be one of "pictures" or "difference", got "diference"; did you mean "difference"?`},
 	{`sheet{ name = "a" } sheet{ name = "A" }`, `sheet: the name "A" was given to a sheet before`},
 }
 
@@ -157,6 +161,10 @@ func TestFinishErrors(t *testing.T) {
 		{ball + `frame{ things = { ball }, tags = { a = 1 } } sheet{ where = { a = 2 } }`, nil, `scenes/test.lua:1: sheet: where admits none of the scene's frames`},
 		{ball + `frame{ things = { ball }, tags = { a = 1 } } sheet{ order = { b = {1} } }`, nil,
 			`scenes/test.lua:1: sheet: order names a tag that no frame has, "b"; accepted: a`},
+		{ball + `frame{ things = { ball }, tags = { gloss = 1 } } sheet{ reference = { glos = 1 } }`, nil,
+			`scenes/test.lua:1: sheet: reference names a tag that no frame has, "glos"; did you mean "gloss"? accepted: gloss`},
+		{ball + `frame{ things = { ball }, tags = { a = 1 } } sheet{ reference = { a = 2 } }`, nil,
+			`scenes/test.lua:1: sheet: none of the sheet's frames has the values that reference names`},
 		{ball + `frame{ things = { ball } } sheet{ caption = "{name" }`, nil, `scenes/test.lua:1: sheet: caption has a { without a name and its }: "{name"`},
 		{ball + `param("gloss", 3) frame{ things = { ball } }`, []Override{{"glos", "4"}},
 			`--set glos=4: scenes/test.lua has no parameter "glos"; did you mean "gloss"? accepted: gloss`},

@@ -306,7 +306,8 @@ func TestSheets(t *testing.T) {
 		settings{ passes = { "diffuse", "depth" } }
 		for step in sweep{ {"a", {1, 2}}, {"b", {"x", "y"}} } do frame{ tags = step, things = { ball } } end
 		sheet{ title = "Über: all", columns = {"b", "a"}, pages = "pass", where = { a = 1, b = {"x", "y"} }, order = { b = {"y"} },
-			caption = "{a} {name} {pass}", per_line = 3, tile = {120, 90}, paper = "light" }
+			caption = "{a} {name} {pass}", per_line = 3, tile = {120, 90}, paper = "light",
+			reference = { a = 1, b = "x" }, show = "difference" }
 		sheet{ title = "Über: all" }
 		sheet{ where = { a = 2 } }
 		sheet{ per_line = 2 }
@@ -316,7 +317,8 @@ func TestSheets(t *testing.T) {
 	want := model.Sheet{Name: "uber-all", Title: "Über: all", Columns: []string{"b", "a"}, Pages: []string{"pass"},
 		Order:   []model.TagOrder{{Key: "b", Values: []model.Value{text("y")}}},
 		Where:   []model.TagChoice{{Key: "a", Values: []model.Value{one}}, {Key: "b", Values: []model.Value{text("x"), text("y")}}},
-		Caption: "{a} {name} {pass}", PerLine: 3, Tile: [2]int{120, 90}, Paper: model.PaperLight, Pos: model.Pos{File: "scenes/test.lua", Line: 4}}
+		Caption: "{a} {name} {pass}", PerLine: 3, Tile: [2]int{120, 90}, Paper: model.PaperLight,
+		Reference: []model.TagChoice{{Key: "a", Values: []model.Value{one}}, {Key: "b", Values: []model.Value{text("x")}}}, Show: model.ShowDifference, Pos: model.Pos{File: "scenes/test.lua", Line: 4}}
 	if !reflect.DeepEqual(p.Sheets[0], want) {
 		t.Errorf(" got %+v\nwant %+v", p.Sheets[0], want)
 	}

@@ -10,7 +10,7 @@ import (
 	"lampbook/engine/model"
 )
 
-const sheetKeys = "name title rows columns pages where order caption per_line tile paper"
+const sheetKeys = "name title rows columns pages where order caption per_line tile paper reference show"
 
 func sheetCalls() []call {
 	return []call{{name: "sheet", keys: sheetKeys, run: func(a *args) lua.LValue {
@@ -20,6 +20,8 @@ func sheetCalls() []call {
 }
 
 const maxSheets = 1000
+
+var showWords = []string{model.ShowPictures: "pictures", model.ShowDifference: "difference"}
 
 var paperWords = []string{model.PaperGrey: "grey", model.PaperLight: "light", model.PaperDark: "dark"}
 
@@ -51,10 +53,10 @@ func (a *args) newSheet() {
 			seen[key] = ax.name
 		}
 	}
-	for _, c := range a.tagTable("where") {
+	for _, c := range a.tagTable("where", manyValues) {
 		s.Where = append(s.Where, model.TagChoice(c))
 	}
-	s.Order = a.tagTable("order")
+	s.Order = a.tagTable("order", manyValues)
 	if a.text("caption", &s.Caption) && (!readable(s.Caption) || len(s.Caption) > maxTagLength) {
 		a.failf("caption must be a readable text of at most %d bytes, got %s", maxTagLength, quote(s.Caption))
 	}
@@ -73,26 +75,40 @@ func (a *args) newSheet() {
 	paper := 0
 	a.oneOf("paper", paperWords, &paper)
 	s.Paper = model.Paper(paper)
+	for _, c := range a.tagTable("reference", "{ tag = value }") {
+		if len(c.Values) != 1 {
+			a.failf("reference must give the tag %s one value, got %d", quote(c.Key), len(c.Values))
+		}
+		s.Reference = append(s.Reference, model.TagChoice(c))
+	}
+	show := 0
+	a.oneOf("show", showWords, &show)
+	s.Show = model.ShowKind(show)
+	if s.Show == model.ShowDifference && len(s.Reference) == 0 {
+		a.failf("show = \"difference\" needs a reference: give the tag and the value of the tiles to compare with, reference = { tag = value }")
+	}
 	s.Name = a.sheetName(&s)
 	e.sheets[strings.ToLower(s.Name)] = true
 	e.plan.Sheets = append(e.plan.Sheets, s)
 }
 
-// tagTable reads { tag = value } or { tag = {value, …} }.
-func (a *args) tagTable(name string) []model.TagOrder {
+const manyValues = "{ tag = {value, …} }"
+
+// tagTable reads { tag = value } or { tag = {value, …} }; form is which of the two a message recommends.
+func (a *args) tagTable(name, form string) []model.TagOrder {
 	v := a.get(name)
 	if v == lua.LNil {
 		return nil
 	}
 	t, ok := v.(*lua.LTable)
 	if !ok {
-		a.failf("%s must be a table { tag = {value, …} }, got %s", name, describe(v))
+		a.failf("%s must be a table %s, got %s", name, form, describe(v))
 	}
 	var out []model.TagOrder
 	for k, x := t.Next(lua.LNil); k != lua.LNil; k, x = t.Next(k) {
 		key, ok := k.(lua.LString)
 		if !ok {
-			a.failf("%s must be a table { tag = {value, …} }, got the key %s", name, describe(k))
+			a.failf("%s must be a table %s, got the key %s", name, form, describe(k))
 		}
 		o := model.TagOrder{Key: string(key)}
 		if _, list := x.(*lua.LTable); !list {
@@ -168,6 +184,9 @@ func (e *Env) finishSheets() error {
 		if len(frames) == 0 {
 			return fmt.Errorf("%ssheet: where admits none of the scene's frames", prefix(s.Pos))
 		}
+		if !slices.ContainsFunc(frames, (&model.Sheet{Where: s.Reference}).Shows) {
+			return fmt.Errorf("%ssheet: none of the sheet's frames has the values that reference names", prefix(s.Pos))
+		}
 		if len(s.Rows) == 0 && len(s.Columns) == 0 && len(s.Pages) == 0 {
 			giveAxes(s, frames)
 		}
@@ -217,6 +236,11 @@ func (e *Env) checkSheet(s *model.Sheet, known []string) error {
 	}
 	for _, w := range s.Where {
 		if err := check("where", false, w.Key); err != nil {
+			return err
+		}
+	}
+	for _, r := range s.Reference {
+		if err := check("reference", false, r.Key); err != nil {
 			return err
 		}
 	}

@@ -9,6 +9,8 @@ import (
 	"regexp"
 
 	"github.com/fogleman/gg"
+
+	"lampbook/engine/model"
 )
 
 // drawing is a plate being drawn.
@@ -19,6 +21,8 @@ type drawing struct {
 	missing  map[int]bool // frames without a picture, as met
 	ground   ground
 	fairness fairness
+	yard     *yardstick  // what was compared with last
+	largest  float64     // difference met
 	page     *image.RGBA // opaque, so that its bytes are an NRGBA's too
 }
 
@@ -27,13 +31,16 @@ func (d *drawing) draw(src Source) (*image.NRGBA, error) {
 	d.missing = maps.Clone(d.failed)
 	d.page = image.NewRGBA(image.Rect(0, 0, d.plate.width, d.plate.height))
 	draw.Draw(d.page, d.page.Rect, image.NewUniform(grey(d.ground.paper)), image.Point{}, draw.Src)
-	for _, t := range d.plate.tiles {
-		if t.frame < 0 {
-			continue
-		}
+	for _, t := range d.byReference(d.plate.tiles) {
 		if err := d.tile(t, src); err != nil {
 			return nil, err
 		}
+	}
+	if d.references != nil {
+		d.plate = d.composeWith(d.part, d.plate.module) // the figures, now known, move nothing
+	}
+	if !d.plate.scale.Empty() {
+		d.strip()
 	}
 	d.restate(d.part, d.plate, d.missing)
 	for _, t := range d.plate.texts {
@@ -44,6 +51,7 @@ func (d *drawing) draw(src Source) (*image.NRGBA, error) {
 
 // tile draws what stands in one place.
 func (d *drawing) tile(t tileItem, src Source) error {
+	d.figures[t.place] = nil // what fails has no figure
 	if reason := d.plan.Frames[t.frame].Failure; reason != "" {
 		d.fail(t.cell, reason)
 		return nil
@@ -61,9 +69,22 @@ func (d *drawing) tile(t tileItem, src Source) error {
 		d.fail(t.cell, reason)
 		return nil
 	}
-	size := tile.Image.Bounds().Size()
-	want := d.sizeIn(size, t.cell.Size())
 	img := tile.Image
+	if d.references != nil {
+		m, ok, err := d.compare(t.place, img, src)
+		if err != nil {
+			return err
+		}
+		if d.sheet.Show == model.ShowDifference {
+			if !ok {
+				d.fail(t.cell, noReference)
+				return nil
+			}
+			img = m.heat(d.scaleEnd)
+		}
+	}
+	size := img.Bounds().Size()
+	want := d.sizeIn(size, t.cell.Size())
 	at := image.Rectangle{t.cell.Min, t.cell.Min.Add(want)}
 	if want != size || !opaque(img) {
 		l := lightOf(img)

@@ -42,22 +42,26 @@ type plate struct {
 	module        float64
 	texts         []textItem
 	tiles         []tileItem
-	subject       [2]int // of texts: where its lines begin and end
+	subject       [2]int          // of texts: where its lines begin and end
+	scale         image.Rectangle // the strip of a sheet of differences; empty on others
 }
 
 // composer lays plates of one sheet.
 type composer struct {
-	plan      *model.Plan
-	sheet     *model.Sheet
-	pivot     *pivot
-	set       *setter
-	words     map[string]wording
-	failed    map[int]bool // frames that the plan knows to fail
-	foot      [][]string   // paragraphs of items
-	cell      image.Point
-	scale     float64 // of tiles against the sheet's own size for them; 1 or less
-	page      int     // which of its table's pages this is, from 0
-	pageCount int
+	plan       *model.Plan
+	sheet      *model.Sheet
+	pivot      *pivot
+	set        *setter
+	words      map[string]wording
+	failed     map[int]bool // frames that the plan knows to fail
+	foot       [][]string   // paragraphs of items
+	cell       image.Point
+	scale      float64            // of tiles against the sheet's own size for them; 1 or less
+	references *references        // nil: nothing is compared
+	figures    map[place][]string // what captions say of the difference, in full and shorter; what is not there yet takes the widest
+	scaleEnd   float64            // ΔE2000 that shows lightest
+	page       int                // which of its table's pages this is, from 0
+	pageCount  int
 }
 
 // part is what of a table stands on a plate. A sheet with one axis has tiles from first on, perLine in each line.
@@ -245,6 +249,10 @@ func (c *composer) restate(p part, pl *plate, failed map[int]bool) {
 
 // captioned reports whether tiles have captions; where the frame's name is the heading, it is not said twice.
 func (c *composer) captioned() bool {
+	return c.references != nil || c.ownCaption()
+}
+
+func (c *composer) ownCaption() bool {
 	return c.sheet.Caption != "" && !(c.pivot.byName && c.sheet.Caption == "{"+model.CaptionName+"}")
 }
 
@@ -282,9 +290,40 @@ func (c *composer) tile(p part, g *grid, cell int, x, y float64) {
 	pl := p.table.cells[cell]
 	g.plate.tiles = append(g.plate.tiles, tileItem{image.Rectangle{at, at.Add(c.cell)}, pl})
 	if g.captionLead > 0 && pl.frame >= 0 {
-		text := captionOf(c.sheet.CaptionParts(), &c.plan.Frames[pl.frame], pl.pass, c.words)
-		g.put(c.set.fit(text, g.captionStyle, float64(c.cell.X)), g.left+x, y+float64(c.cell.Y)+math.Ceil(max(0.72*g.captionLead, mostAscent*g.captionStyle.size)))
+		left, room := g.left+x, float64(c.cell.X)
+		baseline := y + float64(c.cell.Y) + math.Ceil(max(0.72*g.captionLead, mostAscent*g.captionStyle.size))
+		if figure, ok := c.figure(pl, g.captionStyle, room); ok {
+			if !c.ownCaption() {
+				g.put(figure, left, baseline)
+				return
+			}
+			// The figures stand at the right, under one another down a column; the caption takes the rest.
+			at := left + room - math.Ceil(figure.extent())
+			g.put(figure, at, baseline)
+			room = at - left - math.Ceil(g.captionStyle.size)
+		}
+		if c.ownCaption() {
+			text := captionOf(c.sheet.CaptionParts(), &c.plan.Frames[pl.frame], pl.pass, c.words)
+			g.put(c.set.fit(text, g.captionStyle, room), left, baseline)
+		}
 	}
+}
+
+// figure sets what a caption says of the difference. A figure is never cut: one that has no room is left out.
+func (c *composer) figure(at place, st style, room float64) (l line, ok bool) {
+	if c.references == nil {
+		return line{}, false
+	}
+	texts, known := c.figures[at]
+	if !known {
+		texts = widestFigure
+	}
+	for _, t := range texts {
+		if l = c.set.set(t, st); l.extent() <= room {
+			return l, l.left != l.right
+		}
+	}
+	return line{}, false
 }
 
 // footLines lays the foot, a paragraph after another, and closes the page.
@@ -293,6 +332,9 @@ func (c *composer) footLines(g *grid, y float64) {
 	lead := leadFor(g.u, 0.8, st.size)
 	gap := math.Ceil(2 * st.size)
 	y += math.Ceil(1.5 * g.u)
+	if c.sheet.Show == model.ShowDifference {
+		y = c.scaleStrip(g, st, lead, y)
+	}
 	for n, items := range c.foot {
 		if n > 0 {
 			y += lead
@@ -314,4 +356,20 @@ func (c *composer) footLines(g *grid, y float64) {
 		}
 	}
 	g.plate.height = int(math.Ceil(y + 2*g.u))
+}
+
+// scaleStrip lays the scale of differences, its unit above and numbers below, and returns the next baseline.
+func (c *composer) scaleStrip(g *grid, st style, lead, y float64) float64 {
+	const width = 16 // modules, within minMeasure
+	g.put(c.set.fit("ΔE2000 to the reference tile, each pixel", st, g.measure), g.left, y)
+	y += math.Ceil(mostDescent*st.size + g.u/4)
+	at := image.Pt(int(g.left), int(y))
+	g.plate.scale = image.Rectangle{at, at.Add(image.Pt(int(math.Ceil(width*g.u)), int(math.Ceil(0.75*g.u))))}
+	y = float64(g.plate.scale.Max.Y) + math.Ceil(mostAscent*st.size+g.u/4)
+	for i := range 3 {
+		part := float64(i) / 2
+		l := c.set.set(number(c.scaleEnd*part, 4), st)
+		g.put(l, g.left+math.Round((width*g.u-l.extent())*part), y)
+	}
+	return y + 2*lead
 }

@@ -64,6 +64,10 @@ func somePlan(t *rapid.T) (*model.Plan, model.Sheet) {
 		Caption: rapid.SampledFrom([]string{"", "{name}", "{" + keys[0] + "} of {name}"}).Draw(t, "caption"),
 		Paper:   model.Paper(rapid.IntRange(0, 2).Draw(t, "paper")),
 	}
+	if rapid.Bool().Draw(t, "reference") {
+		s.Reference = []model.TagChoice{{Key: keys[0], Values: values[keys[0]][:1]}}
+		s.Show = model.ShowKind(rapid.IntRange(0, 1).Draw(t, "show"))
+	}
 	if i == 0 || j == i {
 		s.PerLine = rapid.IntRange(0, 5).Draw(t, "per line")
 	}
@@ -103,6 +107,13 @@ func TestLayout(t *testing.T) {
 				if tile.frame >= 0 {
 					tiles++
 				}
+			}
+			if s.Show == model.ShowDifference {
+				if pl.scale.Empty() {
+					t.Fatal("no scale")
+				}
+				boxes = append(boxes, pl.scale)
+				what = append(what, "scale")
 			}
 			for i, a := range boxes {
 				if !a.In(page) {

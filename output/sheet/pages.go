@@ -41,13 +41,14 @@ func plates(p *model.Plan, s *model.Sheet, o Options) ([]pagePlan, *composer, er
 	if err != nil {
 		return nil, nil, err
 	}
-	c := &composer{plan: p, sheet: s, pivot: pv, set: set, words: wordings(p, s, pv), failed: map[int]bool{}, scale: 1}
+	c := &composer{plan: p, sheet: s, pivot: pv, set: set, words: wordings(p, s, pv), failed: map[int]bool{}, scale: 1,
+		references: newReferences(p, s, pv), figures: map[place][]string{}, scaleEnd: 100}
 	for _, i := range pv.frames {
 		if p.Frames[i].Failure != "" {
 			c.failed[i] = true
 		}
 	}
-	c.foot = footOf(p, s, pv, judge(p, pv), o.Foot)
+	c.foot = footOf(p, s, pv, judge(p, pv), c.references, o.Foot)
 	natural := naturalCell(p, s, pv)
 	used := map[string]bool{}
 	var pages []pagePlan

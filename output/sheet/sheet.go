@@ -14,7 +14,9 @@ type Tile struct {
 
 // Source fetches what stands in a place: the picture of a frame (an index into the plan's frames) where pass is "", otherwise one
 // of its passes ("diffuse", "specular", "ambient", "emission", "depth", "normal", "samples", "noise") made visible. It is called once for each place,
-// in the order of drawing, so that no more than one picture need be in memory, and not for frames with a Failure in the plan.
+// in the order of drawing, so that no more than one picture need be in memory, and not for frames with a Failure in the plan. On a sheet with a
+// reference it is called once more for each tile that others are compared with, and those others are drawn together; on a sheet
+// of differences, twice as often: the scale is found first.
 // An error ends the sheet.
 type Source func(frame int, pass string) (Tile, error)
 
@@ -43,6 +45,11 @@ func Lay(p *model.Plan, s model.Sheet, src Source, o Options, emit func(Page) er
 	pages, c, err := plates(p, &s, o)
 	if err != nil {
 		return err
+	}
+	if s.Show == model.ShowDifference {
+		if err := surveyAll(pages, c, &s, src); err != nil {
+			return err
+		}
 	}
 	j := judge(p, c.pivot)
 	for _, pg := range pages {

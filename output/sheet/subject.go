@@ -98,7 +98,7 @@ func (c *composer) headingOf(values []model.Value) string {
 }
 
 // footOf writes the foot: what was rendered and how, then whether the tiles may be compared.
-func footOf(p *model.Plan, s *model.Sheet, pv *pivot, j fairness, f Foot) [][]string {
+func footOf(p *model.Plan, s *model.Sheet, pv *pivot, j fairness, r *references, f Foot) [][]string {
 	var first []string
 	add := func(text string) {
 		if text != "" {
@@ -150,6 +150,9 @@ func footOf(p *model.Plan, s *model.Sheet, pv *pivot, j fairness, f Foot) [][]st
 	}
 	if pv.leftOut > 0 {
 		second = append(second, fmt.Sprintf("Left out for want of a tag: %d", pv.leftOut))
+	}
+	if r != nil {
+		second = append(second, "ΔE2000 from "+r.said()+": mean and 95th percentile of the pixels")
 	}
 	second = append(second, "Simulation, not a colour proof")
 	foot := [][]string{first, second}
