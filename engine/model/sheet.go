@@ -16,10 +16,11 @@ type Sheet struct {
 	PerLine int         // a sheet with one axis: tiles in a line; 0 means what brings the sheet nearest to √2 : 1
 	Tile    [2]int      // pixels that a tile is scaled to, keeping its shape, [MinTile, MaxTile]; 0, 0 means the picture's own
 	Paper   Paper
-	// Reference says, for some tags, the one value that the tile to compare with has; in its other tags it is like the compared tile. None: no comparison.
+	// Reference says, for some tags, the one value that the tile to compare with has;
+	// in its other tags it is like the compared tile. None: no comparison.
 	Reference []TagChoice
 	Show      ShowKind // ShowDifference needs a Reference
-	Pos       Pos // where the scene registered it
+	Pos       Pos      // where the scene registered it
 }
 
 // AxisPass is the name that, as a row, column or page, stands for each frame's picture and passes instead of a tag.
