@@ -4,6 +4,7 @@ import (
 	"errors"
 	"os"
 	"os/exec"
+	"os/signal"
 	"path/filepath"
 	"strconv"
 	"syscall"
@@ -52,9 +53,12 @@ func TestScript(t *testing.T) {
 			"hangup":    scriptSignal(syscall.SIGHUP),
 		},
 		Condition: func(name string) (bool, error) {
-			if name == "devfull" {
+			switch name {
+			case "devfull":
 				info, err := os.Stat("/dev/full")
 				return err == nil && info.Mode()&os.ModeCharDevice != 0, nil
+			case "hangups": // under nohup they are ignored, and the program leaves it so
+				return !signal.Ignored(syscall.SIGHUP), nil
 			}
 			return false, errors.New("unknown condition " + name)
 		},
@@ -119,7 +123,13 @@ func scriptSignal(sent os.Signal) func(ts *testscript.TestScript, neg bool, args
 			ts.Fatalf("%s never came: %v", args[1], result)
 		}
 		ts.Check(cmd.Process.Signal(sent))
-		<-ended
+		select {
+		case <-ended:
+		case <-time.After(patience):
+			_ = cmd.Process.Kill()
+			<-ended
+			ts.Fatalf("%v did not end it within %v", sent, patience)
+		}
 		compareStatus(ts, args[0], result)
 	}
 }
