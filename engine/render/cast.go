@@ -52,6 +52,7 @@ type worker struct {
 	shots   []geom.Ray
 	blocked []bool
 	probes  []bvh.Hit
+	single  [1]geom.Ray
 	sums    *pixelSums // of the pixel at hand
 	block   []pixelSums
 	errors  []adaptive // by look
@@ -214,18 +215,18 @@ func (c *cast) castLight(w *worker, px sample.Pixel, l int) {
 }
 
 // closestOpaque is Closest for casts with see-through surfaces: each surface stops its share of rays, chosen by a
-// number of the ray's own. sampleOf gives the sample point of ray i.
+// number of the ray's own. sampleOf gives the sample point of ray i. Of surfaces at the very same distance the first alone counts.
 func (c *cast) closestOpaque(w *worker, mask bvh.Mask, rays []geom.Ray, hits []bvh.Hit, stream sample.Stream, sampleOf func(i int) uint32) {
 	c.scene.Closest(&w.walker, mask, rays, hits)
 	for i := range hits {
-		ray := rays[i]
+		w.single[0] = rays[i]
 		for layer := uint32(1); hits[i].Placement != bvh.NoHit && layer <= maxLayers; layer++ {
 			opacity := c.surfaces[c.surfaceOf(&hits[i])].opacity
 			if opacity >= 1 || stream.Layer(layer).Float(sampleOf(i)) < opacity {
 				break
 			}
-			ray.TMin = hits[i].T
-			c.scene.Closest(&w.walker, mask, []geom.Ray{ray}, hits[i:i+1])
+			w.single[0].TMin = hits[i].T
+			c.scene.Closest(&w.walker, mask, w.single[:], hits[i:i+1])
 		}
 	}
 }
