@@ -62,9 +62,6 @@ type rectangle struct {
 // Dark reports whether no light at all reaches the point, whatever its normal.
 func (q *Prepared) Dark() bool { return q.mode == dark }
 
-// Delta reports whether all samples are the same one.
-func (q *Prepared) Delta() bool { return q.mode <= single }
-
 // Prepare sets q up for the point p, in world space.
 func (l *Lamp) Prepare(pWorld geom.Vec3, q *Prepared) {
 	q.mode = dark
