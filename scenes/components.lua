@@ -5,7 +5,7 @@ local form = mesh.test_form{ segments = 160 } -- the workshop's form for judging
 
 -- Directional light has no size, so that what is seen is the highlight's own width. Lux for directional, nit for ambient.
 local lights = rig{
-  light.directional{ name = "sun", direction = {0.42, -0.66, -0.85}, intensity = 900 },
+  light.directional{ name = "sun", direction = {0.46, -0.72, -0.8}, intensity = 900 },
   light.ambient{ name = "room", intensity = 140 },
 }
 
